@@ -1,0 +1,92 @@
+//! Dip: brake at a low periapsis q into an ellipse that reaches the target apoapsis A, raise the periapsis to p there.
+//!
+//! Burns: at q v_h(q) − v_p(q, A); at A v_a(p, A) − v_a(q, A). Coast: half the period of (q, A).
+
+use super::setting::{Choice, NoPassage, Setting};
+use super::way::{
+    NotFlyable, Objections, Path, Plan, Reason, Way, brake_step, log_grid, raise_step,
+};
+use crate::numerics::minimum;
+use crate::physics::conic::{self, Orbit};
+
+/// Plans the two burns; the brake radius is searched between floor and target where it is left open.
+///
+/// # Errors
+/// Target or brake not allowed, passage not reachable, or a limit broken. Where the brake is left open and no
+/// radius is flyable, the reasons are those of the lowest one.
+#[inline]
+pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
+    let mut objections = Objections::about_target(setting);
+    match setting.brake {
+        Choice::Radius(q) => {
+            objections.about_brake(setting, q);
+            objections.none()?;
+            at(setting, q)
+        }
+        Choice::Best => {
+            objections.none()?;
+            best(setting)
+        }
+    }
+}
+
+fn at(setting: &Setting, q: f64) -> Result<Plan, NotFlyable> {
+    path(setting, q)
+        .map_err(|no| NotFlyable::because(Reason::from_no_passage(no, q)))?
+        .plan(setting)
+}
+
+#[inline]
+fn path(setting: &Setting, q: f64) -> Result<Path<2>, NoPassage> {
+    let gm = setting.gm;
+    let Orbit {
+        periapsis_km: p,
+        apoapsis_km: a,
+    } = setting.target;
+    let arriving = setting.arriving(q)?;
+    Ok(Path {
+        way: Way::Dip,
+        brake_radius_km: q,
+        v_inf_sq: arriving.v_inf_sq,
+        turn: arriving.turn,
+        steps: [
+            brake_step(gm, arriving.v_inf_sq, q, a),
+            raise_step(gm, q, p, a),
+        ],
+        radii: [q, a],
+        orbits: [
+            Orbit {
+                periapsis_km: q,
+                apoapsis_km: a,
+            },
+            setting.target,
+        ],
+        coast_s: 0.5 * conic::period_s(gm, q, a),
+    })
+}
+
+/// Nodes of the search for the brake radius; the cost has at most one valley between floor and target in every
+/// case tried, and the nodes only have to bracket it.
+const BRAKE_NODES: usize = 7;
+
+fn best(setting: &Setting) -> Result<Plan, NotFlyable> {
+    let (low, high) = (setting.limits.floor_radius_km, setting.target.periapsis_km);
+    let grid = log_grid::<BRAKE_NODES>(low, high, BRAKE_NODES);
+    // Limits that depend on the radius (time, propellant) count as walls, so the search asks for the whole plan
+    // only where the bare cost has been found; a plan that breaks a limit there falls back to the full search.
+    let bare =
+        minimum::scan_then_refine(|q| path(setting, q).ok().map(|path| path.dv_km_s()), &grid);
+    let Some(bare) = bare else {
+        return at(setting, low);
+    };
+    match at(setting, bare.x) {
+        Ok(plan) => Ok(plan),
+        Err(_) => {
+            let held = minimum::scan_then_refine(
+                |q| at(setting, q).ok().map(|plan| plan.cost_km_s),
+                &grid,
+            );
+            held.map_or_else(|| at(setting, low), |held| at(setting, held.x))
+        }
+    }
+}

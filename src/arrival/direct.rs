@@ -1,0 +1,35 @@
+//! Direct: one burn, at the periapsis of the target orbit.
+//!
+//! Δv = v_h(p) − v_p(p, A), turned where the plane asks for it. No coast.
+
+use super::setting::Setting;
+use super::way::{NotFlyable, Objections, Path, Plan, Reason, Way, brake_step};
+
+/// Plans the one burn.
+///
+/// # Errors
+/// Target not allowed, passage not reachable, or a limit broken.
+#[inline]
+pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
+    Objections::about_target(setting).none()?;
+    let p = setting.target.periapsis_km;
+    let arriving = setting
+        .arriving(p)
+        .map_err(|no| NotFlyable::because(Reason::from_no_passage(no, p)))?;
+    Path {
+        way: Way::Direct,
+        brake_radius_km: p,
+        v_inf_sq: arriving.v_inf_sq,
+        turn: arriving.turn,
+        steps: [brake_step(
+            setting.gm,
+            arriving.v_inf_sq,
+            p,
+            setting.target.apoapsis_km,
+        )],
+        radii: [p],
+        orbits: [setting.target],
+        coast_s: 0.0,
+    }
+    .plan(setting)
+}

@@ -1,0 +1,179 @@
+//! Loop: brake low at q into a long ellipse up to Q, raise the periapsis to p out there, come back and brake into the target.
+//!
+//! Burns: at q v_h(q) − v_p(q, Q); at Q v_a(p, Q) − v_a(q, Q); at p v_p(p, Q) − v_p(p, A). Coast: half of
+//! (q, Q) plus half of (p, Q).
+
+use super::setting::{Choice, NoPassage, Setting};
+use super::way::{
+    NotFlyable, Objections, Path, Plan, Reason, Way, brake_step, log_grid, lower_step, raise_step,
+};
+use crate::numerics::{minimum, root};
+use crate::physics::conic::{self, Orbit};
+
+/// Plans the three burns; brake radius and loop apoapsis are searched where they are left open.
+///
+/// # Errors
+/// As for dip, and where the loop's apoapsis is over the cap or under the target's.
+pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
+    let mut objections = Objections::about_target(setting);
+    if let Choice::Radius(q) = setting.brake {
+        objections.about_brake(setting, q);
+    }
+    if let Choice::Radius(apoapsis) = setting.loop_apoapsis {
+        let (cap, target) = (setting.limits.cap_radius_km, setting.target.apoapsis_km);
+        if cap < apoapsis {
+            objections.add(Reason::LoopOverCap { apoapsis, cap });
+        }
+        if apoapsis < target {
+            objections.add(Reason::LoopUnderTarget { apoapsis, target });
+        }
+    }
+    objections.none()?;
+    match (setting.brake, setting.loop_apoapsis) {
+        (Choice::Radius(q), Choice::Radius(apoapsis)) => at(setting, q, apoapsis),
+        (Choice::Radius(q), Choice::Best) => at(setting, q, best_apoapsis(setting, q)),
+        (Choice::Best, Choice::Radius(apoapsis)) => {
+            at(setting, best_brake(setting, apoapsis), apoapsis)
+        }
+        (Choice::Best, Choice::Best) => {
+            let (q, apoapsis) = best_pair(setting);
+            at(setting, q, apoapsis)
+        }
+    }
+}
+
+fn at(setting: &Setting, q: f64, apoapsis: f64) -> Result<Plan, NotFlyable> {
+    path(setting, q, apoapsis)
+        .map_err(|no| NotFlyable::because(Reason::from_no_passage(no, q)))?
+        .plan(setting)
+}
+
+#[inline]
+fn path(setting: &Setting, q: f64, apoapsis: f64) -> Result<Path<3>, NoPassage> {
+    let gm = setting.gm;
+    let Orbit {
+        periapsis_km: p,
+        apoapsis_km: a,
+    } = setting.target;
+    let arriving = setting.arriving(q)?;
+    Ok(Path {
+        way: Way::Loop,
+        brake_radius_km: q,
+        v_inf_sq: arriving.v_inf_sq,
+        turn: arriving.turn,
+        steps: [
+            brake_step(gm, arriving.v_inf_sq, q, apoapsis),
+            raise_step(gm, q, p, apoapsis),
+            lower_step(gm, p, apoapsis, a),
+        ],
+        radii: [q, apoapsis, p],
+        orbits: [
+            Orbit {
+                periapsis_km: q,
+                apoapsis_km: apoapsis,
+            },
+            Orbit {
+                periapsis_km: p,
+                apoapsis_km: apoapsis,
+            },
+            setting.target,
+        ],
+        coast_s: coast_s(setting, q, apoapsis),
+    })
+}
+
+fn coast_s(setting: &Setting, q: f64, apoapsis: f64) -> f64 {
+    let p = setting.target.periapsis_km;
+    0.5 * (conic::period_s(setting.gm, q, apoapsis) + conic::period_s(setting.gm, p, apoapsis))
+}
+
+/// Bare cost for searches: `None` where the passage does not exist.
+#[inline]
+fn bare(setting: &Setting, q: f64, apoapsis: f64) -> Option<f64> {
+    path(setting, q, apoapsis).ok().map(|path| path.dv_km_s())
+}
+
+/// Nodes of the search over the loop's apoapsis. Nearly always the highest allowed is cheapest; the nodes bracket the
+/// valley that a large plane change can make.
+const APOAPSIS_NODES: usize = 5;
+const BRAKE_NODES: usize = 7;
+
+/// The highest loop apoapsis that cap and time allow with brake radius q; the target's apoapsis if none.
+///
+/// Time grows strictly with Q, so the border is one root. Burn times (half of them count) depend on Q too: where a
+/// vehicle is given, the allowance is taken from the plan itself.
+fn highest_apoapsis(setting: &Setting, q: f64) -> f64 {
+    let (lowest, cap) = (setting.target.apoapsis_km, setting.limits.cap_radius_km);
+    let over = |apoapsis: f64| {
+        let coast = coast_s(setting, q, apoapsis);
+        if setting.limits.longest_s < coast || setting.vehicle.is_none() {
+            return coast - setting.limits.longest_s;
+        }
+        // The plan without limits, for its duration only.
+        let mut free = *setting;
+        free.limits.longest_s = f64::INFINITY;
+        free.limits.longest_burn_s = f64::INFINITY;
+        free.limits.most_starts = usize::MAX;
+        free.vehicle = free.vehicle.map(|mut vehicle| {
+            // Enough propellant never to be short; the start mass stays.
+            let total = vehicle.start_mass_kg();
+            vehicle.dry_mass_kg = 0.0;
+            vehicle.propellant_kg = total;
+            vehicle
+        });
+        free.policy.residual = 0.0;
+        free.policy.margin = 0.0;
+        at(&free, q, apoapsis).map_or(coast, |plan| plan.duration_s) - setting.limits.longest_s
+    };
+    if over(cap) <= 0.0 {
+        return cap;
+    }
+    if 0.0 <= over(lowest) {
+        return lowest;
+    }
+    match root::bracketed(|x| Some(over(x)), lowest, cap) {
+        // The root may lie a rounding error on the far side of the limit; step inside.
+        Ok(found) if over(found) <= 0.0 => found,
+        Ok(found) => found * (1.0 - 1e-13),
+        Err(_) => lowest,
+    }
+}
+
+fn best_apoapsis(setting: &Setting, q: f64) -> f64 {
+    let lowest = setting.target.apoapsis_km;
+    let highest = highest_apoapsis(setting, q);
+    let grid = log_grid::<APOAPSIS_NODES>(lowest, highest, APOAPSIS_NODES);
+    minimum::scan_then_refine(|apoapsis| bare(setting, q, apoapsis), &grid)
+        .map_or(lowest, |found| found.x)
+}
+
+fn best_brake(setting: &Setting, apoapsis: f64) -> f64 {
+    let (low, high) = (setting.limits.floor_radius_km, setting.target.periapsis_km);
+    let grid = log_grid::<BRAKE_NODES>(low, high, BRAKE_NODES);
+    minimum::scan_then_refine(|q| bare(setting, q, apoapsis), &grid).map_or(low, |found| found.x)
+}
+
+/// Brake radius and loop apoapsis together: one after the other until neither moves.
+///
+/// The time limit ties the two (a higher q leaves less room for Q), and it does so weakly; two or three rounds
+/// settle. The bound on the rounds only guards against a cycle of equal costs.
+fn best_pair(setting: &Setting) -> (f64, f64) {
+    let mut q = best_brake(
+        setting,
+        highest_apoapsis(setting, setting.limits.floor_radius_km),
+    );
+    let mut apoapsis = best_apoapsis(setting, q);
+    let mut cost = bare(setting, q, apoapsis);
+    for _ in 0..4 {
+        let next_q = best_brake(setting, apoapsis);
+        let next_apoapsis = best_apoapsis(setting, next_q);
+        let next_cost = bare(setting, next_q, next_apoapsis);
+        match (next_cost, cost) {
+            (Some(new), Some(old)) if new < old * (1.0 - 1e-14) => {
+                (q, apoapsis, cost) = (next_q, next_apoapsis, next_cost);
+            }
+            _ => break,
+        }
+    }
+    (q, apoapsis)
+}

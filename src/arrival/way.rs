@@ -1,0 +1,571 @@
+//! What every way has in common: its name, the plan it returns, the reasons why it cannot be flown.
+
+use super::setting::{NoPassage, Setting};
+use super::{dip, direct, loop_way};
+use crate::physics::burn::{SpeedStep, captured_share, split_turn};
+use crate::physics::conic::{self, Orbit};
+use crate::physics::transfer::NoArrival;
+use arrayvec::ArrayVec;
+
+/// Most burns that any way makes.
+pub const MOST_BURNS: usize = 8;
+
+/// A way of arriving.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Way {
+    /// One burn, at the periapsis of the target orbit.
+    Direct,
+    /// Brake low into an ellipse that reaches the target apoapsis, raise the periapsis there.
+    Dip,
+    /// Brake low into a long ellipse, raise the periapsis far out, come back and brake into the target.
+    Loop,
+}
+
+/// One line of the table of ways.
+#[derive(Clone, Copy, Debug)]
+pub struct WayEntry {
+    /// The way.
+    pub way: Way,
+    /// Its name in files, JSON and on screen.
+    pub name: &'static str,
+    /// Its glyph where colour is missing (7-bit).
+    pub glyph: char,
+    /// One sentence for help and documents.
+    pub meaning: &'static str,
+    /// What makes a plan of it.
+    pub plan: fn(&Setting) -> Result<Plan, NotFlyable>,
+}
+
+impl Way {
+    /// Every way, in the order they are shown.
+    pub const TABLE: &'static [WayEntry] = &[
+        WayEntry {
+            way: Way::Direct,
+            name: "direct",
+            glyph: '=',
+            meaning: "one burn, at the periapsis of the target orbit",
+            plan: direct::plan,
+        },
+        WayEntry {
+            way: Way::Dip,
+            name: "dip",
+            glyph: 'v',
+            meaning: "brake at a low periapsis into an ellipse that reaches the target apoapsis, then raise the periapsis there",
+            plan: dip::plan,
+        },
+        WayEntry {
+            way: Way::Loop,
+            name: "loop",
+            glyph: 'o',
+            meaning: "brake low into a long ellipse, change plane and raise the periapsis far out, come back and brake into the target orbit",
+            plan: loop_way::plan,
+        },
+    ];
+
+    /// How many ways there are.
+    pub const COUNT: usize = Self::TABLE.len();
+
+    /// The table's line for this way.
+    pub fn entry(self) -> &'static WayEntry {
+        // The table lists the variants in their order; a test holds it to that.
+        &Self::TABLE[self as usize]
+    }
+
+    /// The name in files and on screen.
+    pub fn name(self) -> &'static str {
+        self.entry().name
+    }
+
+    /// Plans this way for a setting.
+    ///
+    /// # Errors
+    /// Every reason why the way cannot be flown there.
+    #[inline]
+    pub fn plan(self, setting: &Setting) -> Result<Plan, NotFlyable> {
+        match self {
+            Way::Direct => direct::plan(setting),
+            Way::Dip => dip::plan(setting),
+            Way::Loop => loop_way::plan(setting),
+        }
+    }
+}
+
+/// One burn of a plan.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Burn {
+    /// Radius at which it is made, km.
+    pub at_radius_km: f64,
+    /// Speed before, km/s.
+    pub speed_before_km_s: f64,
+    /// Speed after, km/s.
+    pub speed_after_km_s: f64,
+    /// Δv spent, km/s.
+    pub dv_km_s: f64,
+    /// Δv if it took no time, km/s.
+    pub impulsive_dv_km_s: f64,
+    /// Turn of the plane it makes, rad.
+    pub turn_rad: f64,
+    /// The orbit it leaves.
+    pub orbit_after: Orbit,
+    /// Propellant, kg, where a vehicle is given.
+    pub propellant_kg: Option<f64>,
+    /// Time at full thrust, s, where a vehicle is given.
+    pub duration_s: Option<f64>,
+}
+
+/// What a vehicle makes of a plan.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Consumption {
+    /// Propellant for the Δv spent, kg.
+    pub propellant_kg: f64,
+    /// Propellant for the Δv with margin, plus the residual share, kg.
+    pub propellant_with_margin_kg: f64,
+    /// Mass after the last burn, kg.
+    pub final_mass_kg: f64,
+    /// Longest single burn, s.
+    pub longest_burn_s: f64,
+}
+
+/// A way that can be flown, with everything it costs.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Plan {
+    /// Which way this is.
+    pub way: Way,
+    /// The burns in order.
+    pub burns: ArrayVec<Burn, MOST_BURNS>,
+    /// v∞ of the hyperbola it arrives on, km/s.
+    pub v_inf_km_s: f64,
+    /// Turn of the plane over all burns, rad.
+    pub turn_rad: f64,
+    /// Δv spent by all burns, before margins, km/s.
+    pub dv_km_s: f64,
+    /// Δv if no burn took time, km/s.
+    pub impulsive_dv_km_s: f64,
+    /// Δv plus the fixed cost of every start after the first: what ways are ranked by, km/s.
+    pub cost_km_s: f64,
+    /// Δv with the margin, km/s.
+    pub dv_with_margin_km_s: f64,
+    /// Coasts plus half the burns, s.
+    pub duration_s: f64,
+    /// Radius of the first braking, km.
+    pub brake_radius_km: f64,
+    /// Lowest radius on the way, km.
+    pub lowest_radius_km: f64,
+    /// Aiming radius of the arriving hyperbola, km.
+    pub aiming_radius_km: f64,
+    /// Share of the first burn's own Δv after which the spacecraft is captured.
+    pub captured_share: Option<f64>,
+    /// Time from the start of the first burn to capture, s, where a vehicle is given.
+    pub captured_after_s: Option<f64>,
+    /// Masses and times, where a vehicle is given.
+    pub consumption: Option<Consumption>,
+}
+
+impl Plan {
+    /// Number of burns.
+    pub fn starts(&self) -> usize {
+        self.burns.len()
+    }
+
+    /// Finite-burn loss: spent less impulsive Δv, km/s.
+    pub fn loss_km_s(&self) -> f64 {
+        self.dv_km_s - self.impulsive_dv_km_s
+    }
+}
+
+/// One reason why a way cannot be flown. Radii in km, times in s, masses in kg, angles in rad.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Reason {
+    /// The target periapsis is under the floor.
+    TargetUnderFloor {
+        /// Target periapsis radius.
+        periapsis: f64,
+        /// Floor radius.
+        floor: f64,
+    },
+    /// The target apoapsis is over the cap.
+    TargetOverCap {
+        /// Target apoapsis radius.
+        apoapsis: f64,
+        /// Cap radius.
+        cap: f64,
+    },
+    /// The brake radius is under the floor.
+    BrakeUnderFloor {
+        /// Brake radius.
+        brake: f64,
+        /// Floor radius.
+        floor: f64,
+    },
+    /// The brake radius is above the target periapsis.
+    BrakeOverTarget {
+        /// Brake radius.
+        brake: f64,
+        /// Target periapsis radius.
+        periapsis: f64,
+    },
+    /// The loop's apoapsis is over the cap.
+    LoopOverCap {
+        /// Loop apoapsis radius.
+        apoapsis: f64,
+        /// Cap radius.
+        cap: f64,
+    },
+    /// The loop's apoapsis is under the target's.
+    LoopUnderTarget {
+        /// Loop apoapsis radius.
+        apoapsis: f64,
+        /// Target apoapsis radius.
+        target: f64,
+    },
+    /// It takes too long.
+    TooLong {
+        /// Time it takes.
+        takes: f64,
+        /// Limit.
+        limit: f64,
+    },
+    /// It needs too many starts.
+    TooManyStarts {
+        /// Starts it needs.
+        needs: usize,
+        /// Limit.
+        limit: usize,
+    },
+    /// One burn is too long.
+    BurnTooLong {
+        /// Longest burn.
+        takes: f64,
+        /// Limit.
+        limit: f64,
+    },
+    /// Propellant is short.
+    PropellantShort {
+        /// Propellant needed with margin and residuals.
+        needs: f64,
+        /// Propellant aboard.
+        aboard: f64,
+    },
+    /// The transfer from the parent's orbit does not reach this passage.
+    OutOfReach {
+        /// Periapsis radius asked for.
+        periapsis: f64,
+        /// Farthest periapsis radius reached on that side; zero if none.
+        farthest: f64,
+    },
+    /// The arrival model gives no hyperbola.
+    NotHyperbolic,
+    /// The periapsis lies too far from the equator for burns on the line of apsides.
+    LineOfApsides {
+        /// By how much its latitude is over the wanted inclination.
+        over: f64,
+    },
+}
+
+impl Reason {
+    pub(super) fn from_no_passage(no: NoPassage, periapsis: f64) -> Self {
+        match no {
+            NoPassage::Approach(NoArrival::OutOfReach { farthest_km }) => Reason::OutOfReach {
+                periapsis,
+                farthest: farthest_km,
+            },
+            NoPassage::Approach(NoArrival::NotHyperbolic) => Reason::NotHyperbolic,
+            NoPassage::LineOfApsides { latitude } => Reason::LineOfApsides { over: latitude },
+        }
+    }
+}
+
+/// A way that cannot be flown: all reasons, the first the most basic.
+#[derive(Clone, Debug, PartialEq)]
+pub struct NotFlyable {
+    /// At least one reason.
+    pub reasons: ArrayVec<Reason, 6>,
+}
+
+impl NotFlyable {
+    pub(super) fn because(reason: Reason) -> Self {
+        let mut reasons = ArrayVec::new();
+        reasons.push(reason);
+        Self { reasons }
+    }
+}
+
+/// Collects reasons while a way is looked at.
+#[derive(Default)]
+pub(super) struct Objections(ArrayVec<Reason, 6>);
+
+impl Objections {
+    pub(super) fn add(&mut self, reason: Reason) {
+        // More than six reasons help nobody; the first six stand.
+        let _ = self.0.try_push(reason);
+    }
+
+    /// Reasons that hold for every way: the target itself is not allowed.
+    pub(super) fn about_target(setting: &Setting) -> Self {
+        let mut objections = Self::default();
+        let (target, limits) = (&setting.target, &setting.limits);
+        if target.periapsis_km < limits.floor_radius_km {
+            objections.add(Reason::TargetUnderFloor {
+                periapsis: target.periapsis_km,
+                floor: limits.floor_radius_km,
+            });
+        }
+        if limits.cap_radius_km < target.apoapsis_km {
+            objections.add(Reason::TargetOverCap {
+                apoapsis: target.apoapsis_km,
+                cap: limits.cap_radius_km,
+            });
+        }
+        objections
+    }
+
+    /// Reasons about the radius at which dip and loop brake.
+    pub(super) fn about_brake(&mut self, setting: &Setting, brake: f64) {
+        if brake < setting.limits.floor_radius_km {
+            self.add(Reason::BrakeUnderFloor {
+                brake,
+                floor: setting.limits.floor_radius_km,
+            });
+        }
+        if setting.target.periapsis_km < brake {
+            self.add(Reason::BrakeOverTarget {
+                brake,
+                periapsis: setting.target.periapsis_km,
+            });
+        }
+    }
+
+    pub(super) fn none(self) -> Result<(), NotFlyable> {
+        if self.0.is_empty() {
+            Ok(())
+        } else {
+            Err(NotFlyable { reasons: self.0 })
+        }
+    }
+}
+
+/// The bare path of a way: what its geometry says before vehicle, policy and limits are asked.
+pub(super) struct Path<const N: usize> {
+    pub(super) way: Way,
+    pub(super) brake_radius_km: f64,
+    pub(super) v_inf_sq: f64,
+    pub(super) turn: f64,
+    /// Radius, speeds and orbit left, burn by burn.
+    pub(super) steps: [SpeedStep; N],
+    pub(super) radii: [f64; N],
+    pub(super) orbits: [Orbit; N],
+    pub(super) coast_s: f64,
+}
+
+impl<const N: usize> Path<N> {
+    /// Sum of the burns with the turn split at its cheapest, km/s; no vehicle, no limits. For searches.
+    #[inline]
+    pub(super) fn dv_km_s(&self) -> f64 {
+        let angles = split_turn(&self.steps, self.turn);
+        (0..N).map(|k| self.steps[k].dv_km_s(angles[k])).sum()
+    }
+
+    /// Asks vehicle, policy and limits, and makes the plan.
+    #[inline]
+    pub(super) fn plan(&self, setting: &Setting) -> Result<Plan, NotFlyable> {
+        let angles = split_turn(&self.steps, self.turn);
+        let mut burns = ArrayVec::new();
+        let mut dv = 0.0;
+        for k in 0..N {
+            let step = self.steps[k];
+            let spent = step.dv_km_s(angles[k]);
+            dv += spent;
+            burns.push(Burn {
+                at_radius_km: self.radii[k],
+                speed_before_km_s: step.before,
+                speed_after_km_s: step.after,
+                dv_km_s: spent,
+                impulsive_dv_km_s: spent,
+                turn_rad: angles[k],
+                orbit_after: self.orbits[k],
+                propellant_kg: None,
+                duration_s: None,
+            });
+        }
+        let policy = &setting.policy;
+        let mut plan = Plan {
+            way: self.way,
+            burns,
+            v_inf_km_s: self.v_inf_sq.sqrt(),
+            turn_rad: self.turn,
+            dv_km_s: dv,
+            impulsive_dv_km_s: dv,
+            cost_km_s: dv + policy.per_start_km_s * (N - 1) as f64,
+            dv_with_margin_km_s: dv * (1.0 + policy.margin),
+            duration_s: self.coast_s,
+            brake_radius_km: self.brake_radius_km,
+            lowest_radius_km: self.brake_radius_km,
+            aiming_radius_km: conic::aiming_radius_km(
+                setting.gm,
+                self.v_inf_sq,
+                self.brake_radius_km,
+            ),
+            captured_share: captured_share(self.steps[0], angles[0], self.v_inf_sq),
+            captured_after_s: None,
+            consumption: None,
+        };
+        plan.consume(setting);
+        plan.hold_to_limits(setting)?;
+        Ok(plan)
+    }
+}
+
+impl Plan {
+    /// Rocket equation over the burns, where a vehicle is given.
+    fn consume(&mut self, setting: &Setting) {
+        let Some(vehicle) = setting.vehicle else {
+            return;
+        };
+        let start = vehicle.start_mass_kg();
+        let mut mass = start;
+        let (mut longest, mut total) = (0.0_f64, 0.0);
+        for burn in &mut self.burns {
+            let propellant = vehicle.propellant_for_kg(mass, burn.dv_km_s);
+            let duration = vehicle.burn_time_s(propellant);
+            mass -= propellant;
+            longest = longest.max(duration);
+            total += duration;
+            burn.propellant_kg = Some(propellant);
+            burn.duration_s = Some(duration);
+        }
+        self.duration_s += 0.5 * total;
+        let with_margin = vehicle.propellant_for_kg(start, self.dv_with_margin_km_s);
+        self.captured_after_s = self.captured_share.map(|share| {
+            vehicle.burn_time_s(vehicle.propellant_for_kg(start, share * self.burns[0].dv_km_s))
+        });
+        self.consumption = Some(Consumption {
+            propellant_kg: start - mass,
+            propellant_with_margin_kg: with_margin * (1.0 + setting.policy.residual),
+            final_mass_kg: mass,
+            longest_burn_s: longest,
+        });
+    }
+
+    /// Holds times, starts and masses against the limits.
+    fn hold_to_limits(&self, setting: &Setting) -> Result<(), NotFlyable> {
+        let limits = &setting.limits;
+        let mut objections = Objections::default();
+        if limits.longest_s < self.duration_s {
+            objections.add(Reason::TooLong {
+                takes: self.duration_s,
+                limit: limits.longest_s,
+            });
+        }
+        if limits.most_starts < self.starts() {
+            objections.add(Reason::TooManyStarts {
+                needs: self.starts(),
+                limit: limits.most_starts,
+            });
+        }
+        if let (Some(used), Some(vehicle)) = (&self.consumption, &setting.vehicle) {
+            if limits.longest_burn_s < used.longest_burn_s {
+                objections.add(Reason::BurnTooLong {
+                    takes: used.longest_burn_s,
+                    limit: limits.longest_burn_s,
+                });
+            }
+            if vehicle.propellant_kg < used.propellant_with_margin_kg {
+                objections.add(Reason::PropellantShort {
+                    needs: used.propellant_with_margin_kg,
+                    aboard: vehicle.propellant_kg,
+                });
+            }
+        }
+        objections.none()
+    }
+}
+
+/// The braking step from the hyperbola into an ellipse: speeds at q, difference without cancellation.
+///
+/// v_h(q) − v_p(q,Q) = (v∞² + 2μ/(q+Q)) / (v_h + v_p).
+#[inline]
+pub(super) fn brake_step(gm: f64, v_inf_sq: f64, q: f64, apoapsis: f64) -> SpeedStep {
+    let before = conic::hyperbola_speed_km_s(gm, v_inf_sq, q);
+    let after = conic::periapsis_speed_km_s(gm, q, apoapsis);
+    SpeedStep {
+        before,
+        after,
+        difference: (v_inf_sq + 2.0 * gm / (q + apoapsis)) / (before + after),
+    }
+}
+
+/// The step at apoapsis Q that moves the periapsis from q to p: speed difference −2μ (p − q) / ((p+Q)(q+Q)(sum)).
+#[inline]
+pub(super) fn raise_step(gm: f64, q: f64, p: f64, apoapsis: f64) -> SpeedStep {
+    let before = conic::apoapsis_speed_km_s(gm, q, apoapsis);
+    let after = conic::apoapsis_speed_km_s(gm, p, apoapsis);
+    let squares = 2.0 * gm * (q - p) / ((p + apoapsis) * (q + apoapsis));
+    SpeedStep {
+        before,
+        after,
+        difference: squares / (before + after),
+    }
+}
+
+/// The step at periapsis p that lowers the apoapsis from Q to A: 2μ (Q − A) / ((p+Q)(p+A)(sum)).
+#[inline]
+pub(super) fn lower_step(gm: f64, p: f64, from: f64, to: f64) -> SpeedStep {
+    let before = conic::periapsis_speed_km_s(gm, p, from);
+    let after = conic::periapsis_speed_km_s(gm, p, to);
+    let squares = 2.0 * gm * (from - to) / ((p + from) * (p + to));
+    SpeedStep {
+        before,
+        after,
+        difference: squares / (before + after),
+    }
+}
+
+/// An ascending grid of `n` radii from `low` to `high`, evenly spaced in the logarithm, ends exact.
+pub(super) fn log_grid<const CAP: usize>(low: f64, high: f64, n: usize) -> ArrayVec<f64, CAP> {
+    let mut grid = ArrayVec::new();
+    grid.push(low);
+    if low < high {
+        let n = n.clamp(2, CAP);
+        let ratio = (high / low).ln() / (n - 1) as f64;
+        for k in 1..n - 1 {
+            grid.push(low * (ratio * k as f64).exp());
+        }
+        grid.push(high);
+    }
+    grid
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_table_lists_the_ways_in_order_with_glyphs_of_their_own() {
+        for (k, entry) in Way::TABLE.iter().enumerate() {
+            assert_eq!(entry.way as usize, k);
+            assert!(entry.glyph.is_ascii_graphic() && !"*X|+-".contains(entry.glyph));
+            assert_eq!(
+                Way::TABLE
+                    .iter()
+                    .filter(|other| other.glyph == entry.glyph || other.name == entry.name)
+                    .count(),
+                1
+            );
+        }
+    }
+
+    #[test]
+    fn steps_equal_the_plain_differences() {
+        let (gm, q, p, a, b) = (4902.8, 1837.4, 6000.0, 14_000.0, 60_000.0);
+        for step in [
+            brake_step(gm, 0.7, q, a),
+            raise_step(gm, q, p, b),
+            lower_step(gm, p, b, a),
+        ] {
+            assert!((step.difference - (step.before - step.after)).abs() < 1e-15);
+        }
+        // Where nothing changes, the difference is zero and not rounding noise.
+        assert_eq!(raise_step(gm, p, p, a).difference, 0.0);
+        assert_eq!(lower_step(gm, p, a, a).difference, 0.0);
+    }
+}

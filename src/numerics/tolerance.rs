@@ -1,0 +1,28 @@
+//! The accuracies the engine works to, by name, each with the reason for its value.
+//!
+//! A search that needs another accuracy gets another name here, so that every loosening is
+//! visible in one place.
+
+/// Relative width at which a bracketed root search stops.
+///
+/// Four units in the last place of a double: below that the bracket ends differ only by rounding.
+pub const ROOT_RELATIVE: f64 = 4.0 * f64::EPSILON;
+
+/// Relative width at which a bounded minimum search stops.
+///
+/// Near a smooth minimum the value changes by the square of the displacement, so comparing values
+/// cannot place it better than the square root of the rounding error, 1.5e-8. Where the place
+/// itself is reported, [`super::minimum::stationary_point`] goes on from there.
+pub const MINIMUM_RELATIVE: f64 = 1.5e-8;
+
+/// Step of the derivative stencil, relative to the abscissa.
+///
+/// The sixth-order stencil truncates at h⁶ = 1.6e-17 for this step, below the rounding error of the
+/// values; a smaller step would only amplify that rounding error (by 1/h).
+pub const STENCIL_RELATIVE: f64 = 5.0e-3;
+
+/// Two costs closer than this, relative, are the same cost: the way with fewer burns is preferred.
+///
+/// The exact ties (braking altitude equal to the target, apoapsis at the break-even radius) come out
+/// to a few 1e-16; one hundred times that keeps rounding from choosing the winner.
+pub const SAME_COST_RELATIVE: f64 = 1.0e-13;

@@ -1,0 +1,16 @@
+//! Questions asked of the ways: one point, a curve, a map's cell, where it turns. No file, no screen, no clock.
+
+pub mod answer;
+pub mod case;
+pub mod check;
+pub mod curve;
+pub mod field;
+pub mod knob;
+pub mod landmarks;
+pub mod spec;
+pub mod verdict;
+pub mod warning;
+
+pub use answer::Answer;
+pub use case::Case;
+pub use spec::Spec;

@@ -1,0 +1,245 @@
+//! Curves: one knob swept, every way asked at each value.
+
+use super::answer::cheapest;
+use super::case::Case;
+use super::knob::{Knob, KnobId, Refused, Value};
+use crate::arrival::{NotFlyable, Plan, Setting, Way};
+
+/// What is kept of a plan at one point of a curve. km/s, s, kg.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Sample {
+    /// What ways are ranked by, km/s.
+    pub cost_km_s: f64,
+    /// Δv spent, km/s.
+    pub dv_km_s: f64,
+    /// Δv if burns took no time, km/s.
+    pub impulsive_dv_km_s: f64,
+    /// Propellant for the Δv spent, kg.
+    pub propellant_kg: Option<f64>,
+    /// Mass after the last burn, kg.
+    pub final_mass_kg: Option<f64>,
+    /// Coasts plus half the burns, s.
+    pub duration_s: f64,
+    /// Number of burns.
+    pub starts: usize,
+    /// Longest single burn, s.
+    pub longest_burn_s: Option<f64>,
+    /// Share of the first burn's Δv after which the spacecraft is captured.
+    pub captured_share: Option<f64>,
+}
+
+impl From<&Plan> for Sample {
+    fn from(plan: &Plan) -> Self {
+        Self {
+            cost_km_s: plan.cost_km_s,
+            dv_km_s: plan.dv_km_s,
+            impulsive_dv_km_s: plan.impulsive_dv_km_s,
+            propellant_kg: plan.consumption.map(|used| used.propellant_kg),
+            final_mass_kg: plan.consumption.map(|used| used.final_mass_kg),
+            duration_s: plan.duration_s,
+            starts: plan.starts(),
+            longest_burn_s: plan.consumption.map(|used| used.longest_burn_s),
+            captured_share: plan.captured_share,
+        }
+    }
+}
+
+/// One point of a curve.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Point {
+    /// The knob's value, in its unit.
+    pub x: f64,
+    /// Each way of the table, in its order.
+    pub ways: [Result<Sample, NotFlyable>; Way::COUNT],
+    /// The cheapest flyable way.
+    pub best: Option<Way>,
+}
+
+impl Point {
+    /// Asks every way at a setting.
+    pub fn ask(x: f64, setting: &Setting) -> Self {
+        let ways = std::array::from_fn(|k| {
+            Way::TABLE[k]
+                .way
+                .plan(setting)
+                .map(|plan| Sample::from(&plan))
+        });
+        Self {
+            x,
+            best: best_of(&ways),
+            ways,
+        }
+    }
+}
+
+/// The cheapest of a point's ways.
+pub fn best_of(ways: &[Result<Sample, NotFlyable>; Way::COUNT]) -> Option<Way> {
+    cheapest(Way::TABLE.iter().zip(ways).filter_map(|(entry, way)| {
+        way.as_ref()
+            .ok()
+            .map(|sample| (entry.way, sample.cost_km_s, sample.starts))
+    }))
+}
+
+/// The values a knob takes in a sweep.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Axis {
+    /// The knob.
+    pub knob: &'static Knob,
+    /// First value, in the knob's unit.
+    pub from: f64,
+    /// Last value.
+    pub to: f64,
+    /// How many values, ends included.
+    pub points: usize,
+    /// Evenly spaced in the logarithm.
+    pub log: bool,
+}
+
+impl PartialEq for Knob {
+    fn eq(&self, other: &Self) -> bool {
+        self.id == other.id
+    }
+}
+
+impl Axis {
+    /// Makes an axis.
+    ///
+    /// # Errors
+    /// A sentence where the ends are not allowed for the knob, fewer than two points, or a logarithm of what is not positive.
+    pub fn new(
+        knob: &'static Knob,
+        from: f64,
+        to: f64,
+        points: usize,
+        log: bool,
+    ) -> Result<Self, String> {
+        let field = knob.range_field();
+        for (end, value) in [("from", from), ("to", to)] {
+            if !field.allows(value) {
+                return Err(format!(
+                    "{} {end} {value} is not allowed: {}",
+                    knob.name,
+                    field.range()
+                ));
+            }
+        }
+        if from == to {
+            return Err(format!(
+                "{} from and to are both {from}; give two different values",
+                knob.name
+            ));
+        }
+        if !(2..=MOST_POINTS).contains(&points) {
+            return Err(format!(
+                "{points} points are not allowed: at least 2 and at most {MOST_POINTS}"
+            ));
+        }
+        if log && (from <= 0.0 || to <= 0.0) {
+            return Err(format!(
+                "a logarithmic axis needs ends above 0, and {} goes from {from} to {to}",
+                knob.name
+            ));
+        }
+        Ok(Self {
+            knob,
+            from,
+            to,
+            points,
+            log,
+        })
+    }
+
+    /// The k-th value; the ends are met exactly.
+    pub fn value(&self, k: usize) -> f64 {
+        if k == 0 {
+            return self.from;
+        }
+        if self.points <= k + 1 {
+            return self.to;
+        }
+        let share = k as f64 / (self.points - 1) as f64;
+        if self.log {
+            self.from * (share * (self.to / self.from).ln()).exp()
+        } else {
+            self.from + share * (self.to - self.from)
+        }
+    }
+
+    /// All values.
+    pub fn values(&self) -> impl Iterator<Item = f64> + '_ {
+        (0..self.points).map(|k| self.value(k))
+    }
+}
+
+/// Most values an axis may have: keeps a typing error from filling the memory.
+pub const MOST_POINTS: usize = 100_000;
+
+/// The setting at a value of a knob. Target altitude, the axis of the screen, is set without building a new case.
+///
+/// # Errors
+/// Where the scenario has no such knob or the value contradicts another field.
+pub fn setting_at(case: &Case, knob: &Knob, value: f64) -> Result<Setting, Refused> {
+    if knob.id == KnobId::TargetAltitude {
+        let target = case.setting().target;
+        let periapsis = case.body().radius_km + value;
+        // The eccentricity is kept by keeping the ratio of the apsides.
+        let apoapsis = periapsis * (target.apoapsis_km / target.periapsis_km);
+        return Ok(case.setting().with_target(periapsis, apoapsis));
+    }
+    knob.set(case, Value::Number(value))
+        .map(|case| *case.setting())
+}
+
+/// A value of a sweep: the point, or why the scenario cannot take the value.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Row {
+    /// Every way asked.
+    Asked(Point),
+    /// The scenario cannot take this value.
+    Refused {
+        /// The value.
+        x: f64,
+        /// Why.
+        why: Refused,
+    },
+}
+
+/// Sweeps one knob.
+pub fn curve(case: &Case, axis: &Axis) -> Vec<Row> {
+    axis.values()
+        .map(|x| match setting_at(case, axis.knob, x) {
+            Ok(setting) => Row::Asked(Point::ask(x, &setting)),
+            Err(why) => Row::Refused { x, why },
+        })
+        .collect()
+}
+
+/// One cell of a map: the values of both knobs and the point (its `x` is the first knob's value).
+#[derive(Clone, Debug, PartialEq)]
+pub struct Cell {
+    /// Value of the second knob.
+    pub y: f64,
+    /// The row at the first knob's value.
+    pub row: Row,
+}
+
+/// Sweeps two knobs: for each value of the second, all values of the first.
+pub fn map(case: &Case, first: &Axis, second: &Axis) -> Vec<Cell> {
+    let mut cells = Vec::with_capacity(first.points * second.points);
+    for y in second.values() {
+        match second.knob.set(case, Value::Number(y)) {
+            Ok(at_y) => cells.extend(curve(&at_y, first).into_iter().map(|row| Cell { y, row })),
+            Err(why) => {
+                cells.extend(first.values().map(|x| Cell {
+                    y,
+                    row: Row::Refused {
+                        x,
+                        why: why.clone(),
+                    },
+                }));
+            }
+        }
+    }
+    cells
+}

@@ -1,0 +1,295 @@
+//! Where it turns: the cheapest altitude of the direct curve, and every altitude at which the cheapest way changes.
+//!
+//! Both follow the target-altitude sweep over the whole sensible range (floor to cap) at unchanged eccentricity, with
+//! everything else as in the setting. Radii here are those of the target's periapsis.
+
+use super::answer::cheapest;
+use crate::arrival::{Choice, Setting, Way};
+use crate::numerics::{minimum, root};
+
+/// Cheapest altitude and crossovers.
+#[derive(Clone, Debug, PartialEq, Default)]
+pub struct Landmarks {
+    /// Where direct costs least; `None` where direct is flyable nowhere.
+    pub cheapest: Option<Cheapest>,
+    /// Every change of the cheapest way, from low to high.
+    pub crossovers: Vec<Crossover>,
+}
+
+/// The least direct cost.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Cheapest {
+    /// Target periapsis radius, km.
+    pub radius_km: f64,
+    /// Δv there, km/s.
+    pub dv_km_s: f64,
+    /// Whether the curve still falls towards an end of the range there (floor, cap or a limit holds it).
+    pub at_border: bool,
+}
+
+/// A change of the cheapest way.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Crossover {
+    /// Target periapsis radius, km.
+    pub radius_km: f64,
+    /// Δv of the way that is cheapest just below, km/s.
+    pub dv_km_s: f64,
+    /// Cheapest way just below.
+    pub below: Way,
+    /// Cheapest way just above.
+    pub above: Way,
+    /// What changes there.
+    pub kind: CrossoverKind,
+}
+
+/// What makes the cheapest way change.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum CrossoverKind {
+    /// The two cost the same there.
+    Tie,
+    /// One of the two stops (or starts) being flyable there.
+    Limit,
+}
+
+/// Nodes of the scan over the sensible range.
+pub const SCAN_POINTS: usize = 240;
+
+/// The sensible range of the target periapsis radius (km): floor to where the target apoapsis meets the cap.
+///
+/// `None` where the two leave nothing.
+pub fn sensible_range(setting: &Setting) -> Option<(f64, f64)> {
+    let ratio = setting.target.apoapsis_km / setting.target.periapsis_km;
+    let (low, high) = (
+        setting.limits.floor_radius_km,
+        setting.limits.cap_radius_km / ratio,
+    );
+    (low < high).then_some((low, high))
+}
+
+/// The setting with its target periapsis at a radius, eccentricity unchanged.
+pub fn at_radius(setting: &Setting, radius_km: f64) -> Setting {
+    let ratio = setting.target.apoapsis_km / setting.target.periapsis_km;
+    // At the top of the range the product may pass the cap by a rounding error; the range's end is allowed.
+    let apoapsis = radius_km * ratio;
+    let cap = setting.limits.cap_radius_km;
+    let apoapsis = if cap < apoapsis && apoapsis <= cap * (1.0 + 1e-12) {
+        cap
+    } else {
+        apoapsis
+    };
+    setting.with_target(radius_km, apoapsis.max(radius_km))
+}
+
+/// Finds the landmarks of a setting.
+pub fn landmarks(setting: &Setting) -> Landmarks {
+    let Some((low, high)) = sensible_range(setting) else {
+        return Landmarks::default();
+    };
+    let grid = grid(setting, low, high);
+    let nodes: Vec<Node> = grid
+        .iter()
+        .map(|&radius| Node::ask(setting, radius))
+        .collect();
+    Landmarks {
+        cheapest: cheapest_direct(setting, &grid, &nodes),
+        crossovers: crossovers(setting, &nodes),
+    }
+}
+
+/// Log-spaced radii; nodes crowd just above the brake radius, where dip and loop begin and r = q is a trivial tie.
+fn grid(setting: &Setting, low: f64, high: f64) -> Vec<f64> {
+    let span = (high / low).ln();
+    let mut grid: Vec<f64> = (0..SCAN_POINTS)
+        .map(|k| low * (span * k as f64 / (SCAN_POINTS - 1) as f64).exp())
+        .collect();
+    grid[0] = low;
+    grid[SCAN_POINTS - 1] = high;
+    let brake = match setting.brake {
+        Choice::Radius(brake) => brake,
+        Choice::Best => low,
+    };
+    for near in [0.0, 1e-9, 1e-6, 1e-4, 1e-3, 5e-3] {
+        let radius = brake * (1.0 + near);
+        if low < radius && radius < high {
+            grid.push(radius);
+        }
+    }
+    grid.sort_by(f64::total_cmp);
+    grid.dedup();
+    grid
+}
+
+/// Costs of all ways at one radius, km/s.
+#[derive(Clone, Copy, Debug)]
+struct Node {
+    radius: f64,
+    costs: [Option<(f64, usize)>; Way::COUNT],
+    best: Option<Way>,
+}
+
+impl Node {
+    fn ask(setting: &Setting, radius: f64) -> Self {
+        let here = at_radius(setting, radius);
+        let costs: [Option<(f64, usize)>; Way::COUNT] = std::array::from_fn(|k| {
+            Way::TABLE[k]
+                .way
+                .plan(&here)
+                .ok()
+                .map(|plan| (plan.cost_km_s, plan.starts()))
+        });
+        let best = cheapest(
+            Way::TABLE
+                .iter()
+                .zip(&costs)
+                .filter_map(|(entry, cost)| cost.map(|(cost, starts)| (entry.way, cost, starts))),
+        );
+        Self {
+            radius,
+            costs,
+            best,
+        }
+    }
+
+    fn cost(&self, way: Way) -> Option<f64> {
+        self.costs[way as usize].map(|(cost, _)| cost)
+    }
+}
+
+fn cost_at(setting: &Setting, way: Way, radius: f64) -> Option<f64> {
+    way.plan(&at_radius(setting, radius))
+        .ok()
+        .map(|plan| plan.cost_km_s)
+}
+
+fn cheapest_direct(setting: &Setting, grid: &[f64], nodes: &[Node]) -> Option<Cheapest> {
+    let mut scanned = nodes.iter();
+    // The scan has been paid for: hand out its values first, compute only what the refinement adds.
+    let mut known = || scanned.next().map(|node| node.cost(Way::Direct));
+    let cost = |radius: f64| cost_at(setting, Way::Direct, radius);
+    let found = minimum::scan_then_refine(|radius| known().unwrap_or_else(|| cost(radius)), grid)?;
+    let sharp = minimum::stationary_point(cost, found.x);
+    let radius_km = sharp.unwrap_or(found.x);
+    let plan = Way::Direct.plan(&at_radius(setting, radius_km)).ok()?;
+    Some(Cheapest {
+        radius_km,
+        dv_km_s: plan.dv_km_s,
+        at_border: sharp.is_none(),
+    })
+}
+
+fn crossovers(setting: &Setting, nodes: &[Node]) -> Vec<Crossover> {
+    let mut found = Vec::new();
+    for (k, pair) in nodes.windows(2).enumerate() {
+        let (left, right) = (&pair[0], &pair[1]);
+        match (left.best, right.best) {
+            (Some(a), Some(b)) if a == b => touch(setting, nodes, k, a, &mut found),
+            (Some(_), Some(_)) => between(setting, left, right, 0, &mut found),
+            _ => {}
+        }
+    }
+    // Where dip and loop begin, at the brake radius, the change is not a crossover but the brake itself.
+    if let Choice::Radius(brake) = setting.brake {
+        found.retain(|crossover: &Crossover| brake * (1.0 + 2e-6) < crossover.radius_km);
+    }
+    found
+}
+
+/// Every change of the cheapest way between two nodes with different winners.
+///
+/// A third way may win in between; the halves are then looked at on their own (bounded depth).
+fn between(setting: &Setting, left: &Node, right: &Node, depth: u32, found: &mut Vec<Crossover>) {
+    let (Some(below), Some(above)) = (left.best, right.best) else {
+        return;
+    };
+    if below == above {
+        return;
+    }
+    let tie = match (
+        left.cost(below),
+        left.cost(above),
+        right.cost(below),
+        right.cost(above),
+    ) {
+        (Some(_), Some(_), Some(_), Some(_)) => {
+            let difference = |radius: f64| {
+                Some(cost_at(setting, below, radius)? - cost_at(setting, above, radius)?)
+            };
+            root::bracketed(difference, left.radius, right.radius).ok()
+        }
+        _ => None,
+    };
+    let (radius, kind) = match tie {
+        Some(radius) => (radius, CrossoverKind::Tie),
+        None => {
+            let (_, right_side) = root::border(
+                |radius| Node::ask(setting, radius).best == Some(below),
+                left.radius,
+                right.radius,
+            );
+            (right_side, CrossoverKind::Limit)
+        }
+    };
+    let middle = Node::ask(setting, radius);
+    if let Some(best) = middle.best
+        && best != below
+        && best != above
+        && depth < 4
+    {
+        between(setting, left, &middle, depth + 1, found);
+        between(setting, &middle, right, depth + 1, found);
+        return;
+    }
+    let just_below = radius * (1.0 - 1e-13);
+    let dv = below
+        .plan(&at_radius(
+            setting,
+            if kind == CrossoverKind::Tie {
+                radius
+            } else {
+                just_below.max(left.radius)
+            },
+        ))
+        .or_else(|_| below.plan(&at_radius(setting, left.radius)));
+    if let Ok(plan) = dv {
+        found.push(Crossover {
+            radius_km: radius,
+            dv_km_s: plan.dv_km_s,
+            below,
+            above,
+            kind,
+        });
+    }
+}
+
+/// Two crossovers inside one cell: the winner is the same at both ends, but another way comes close enough between
+/// nodes to win for a stretch. Looks wherever the gap to another way has its least value at node `k + 1`.
+fn touch(setting: &Setting, nodes: &[Node], k: usize, winner: Way, found: &mut Vec<Crossover>) {
+    let Some(next) = nodes.get(k + 2) else { return };
+    let (left, here) = (&nodes[k], &nodes[k + 1]);
+    if next.best != Some(winner) {
+        return;
+    }
+    for entry in Way::TABLE.iter().filter(|entry| entry.way != winner) {
+        let gap = |node: &Node| Some(node.cost(entry.way)? - node.cost(winner)?);
+        let (Some(a), Some(b), Some(c)) = (gap(left), gap(here), gap(next)) else {
+            continue;
+        };
+        // A smooth gap has a parabola's worth of room below its least node, no more than its second difference.
+        if !(b <= a && b < c && b <= a + c - 2.0 * b) {
+            continue;
+        }
+        let between_costs = |radius: f64| {
+            Some(cost_at(setting, entry.way, radius)? - cost_at(setting, winner, radius)?)
+        };
+        let start = minimum::Minimum {
+            x: here.radius,
+            value: b,
+        };
+        let least = minimum::refine(between_costs, left.radius, next.radius, start);
+        let middle = Node::ask(setting, least.x);
+        if middle.best != Some(winner) {
+            between(setting, left, &middle, 0, found);
+            between(setting, &middle, next, 0, found);
+        }
+    }
+}
