@@ -17,9 +17,11 @@
 //! `DEVELOPERS.md` has the invariants and the recipes for adding to it.
 
 pub mod arrival;
+pub mod cli;
 pub mod numerics;
 pub mod physics;
 pub mod report;
 pub mod scenario;
 pub mod study;
+pub mod tui;
 pub mod visible;

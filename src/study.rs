@@ -4,6 +4,7 @@ pub mod answer;
 pub mod case;
 pub mod check;
 pub mod curve;
+pub mod entry;
 pub mod field;
 pub mod knob;
 pub mod landmarks;

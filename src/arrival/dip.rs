@@ -3,19 +3,17 @@
 //! Burns: at q v_h(q) − v_p(q, A); at A v_a(p, A) − v_a(q, A). Coast: half the period of (q, A).
 
 use super::setting::{Choice, NoPassage, Setting};
-use super::way::{
-    NotFlyable, Objections, Path, Plan, Reason, Way, brake_step, log_grid, raise_step,
-};
+use super::way::{NotFlyable, Objections, Path, Reason, Way, brake_step, log_grid, raise_step};
 use crate::numerics::minimum;
 use crate::physics::conic::{self, Orbit};
 
-/// Plans the two burns; the brake radius is searched between floor and target where it is left open.
+/// The two burns; the brake radius is searched between floor and target where it is left open.
 ///
 /// # Errors
-/// Target or brake not allowed, passage not reachable, or a limit broken. Where the brake is left open and no
-/// radius is flyable, the reasons are those of the lowest one.
+/// Target or brake not allowed, or passage not reachable. Where the brake is left open and no radius is flyable,
+/// the reasons are those of the lowest one.
 #[inline]
-pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
+pub(super) fn solve(setting: &Setting) -> Result<Path<2>, NotFlyable> {
     let mut objections = Objections::about_target(setting);
     match setting.brake {
         Choice::Radius(q) => {
@@ -30,10 +28,8 @@ pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
     }
 }
 
-fn at(setting: &Setting, q: f64) -> Result<Plan, NotFlyable> {
-    path(setting, q)
-        .map_err(|no| NotFlyable::because(Reason::from_no_passage(no, q)))?
-        .plan(setting)
+fn at(setting: &Setting, q: f64) -> Result<Path<2>, NotFlyable> {
+    path(setting, q).map_err(|no| NotFlyable::because(Reason::from_no_passage(no, q)))
 }
 
 #[inline]
@@ -67,26 +63,30 @@ fn path(setting: &Setting, q: f64) -> Result<Path<2>, NoPassage> {
 
 /// Nodes of the search for the brake radius; the cost has at most one valley between floor and target in every
 /// case tried, and the nodes only have to bracket it.
-const BRAKE_NODES: usize = 7;
+const BRAKE_NODES: usize = 6;
 
-fn best(setting: &Setting) -> Result<Plan, NotFlyable> {
+fn best(setting: &Setting) -> Result<Path<2>, NotFlyable> {
     let (low, high) = (setting.limits.floor_radius_km, setting.target.periapsis_km);
     let grid = log_grid::<BRAKE_NODES>(low, high, BRAKE_NODES);
-    // Limits that depend on the radius (time, propellant) count as walls, so the search asks for the whole plan
-    // only where the bare cost has been found; a plan that breaks a limit there falls back to the full search.
+    // Limits that depend on the radius (time, propellant) count as walls, so the whole figures are asked for only where
+    // the bare cost has been found; an optimum that breaks a limit falls back to the search within them.
     let bare =
         minimum::scan_then_refine(|q| path(setting, q).ok().map(|path| path.dv_km_s()), &grid);
     let Some(bare) = bare else {
         return at(setting, low);
     };
-    match at(setting, bare.x) {
-        Ok(plan) => Ok(plan),
-        Err(_) => {
-            let held = minimum::scan_then_refine(
-                |q| at(setting, q).ok().map(|plan| plan.cost_km_s),
-                &grid,
-            );
-            held.map_or_else(|| at(setting, low), |held| at(setting, held.x))
-        }
+    let free = at(setting, bare.x)?;
+    if free.figures(setting).is_ok() {
+        return Ok(free);
+    }
+    let within = |q: f64| {
+        at(setting, q)
+            .and_then(|path| path.figures(setting))
+            .ok()
+            .map(|figures| figures.cost_km_s)
+    };
+    match minimum::scan_then_refine(within, &grid) {
+        Some(held) => at(setting, held.x),
+        None => Ok(free),
     }
 }

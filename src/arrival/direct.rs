@@ -3,20 +3,20 @@
 //! Δv = v_h(p) − v_p(p, A), turned where the plane asks for it. No coast.
 
 use super::setting::Setting;
-use super::way::{NotFlyable, Objections, Path, Plan, Reason, Way, brake_step};
+use super::way::{NotFlyable, Objections, Path, Reason, Way, brake_step};
 
-/// Plans the one burn.
+/// The one burn.
 ///
 /// # Errors
-/// Target not allowed, passage not reachable, or a limit broken.
+/// Target not allowed, or passage not reachable.
 #[inline]
-pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
+pub(super) fn solve(setting: &Setting) -> Result<Path<1>, NotFlyable> {
     Objections::about_target(setting).none()?;
     let p = setting.target.periapsis_km;
     let arriving = setting
         .arriving(p)
         .map_err(|no| NotFlyable::because(Reason::from_no_passage(no, p)))?;
-    Path {
+    Ok(Path {
         way: Way::Direct,
         brake_radius_km: p,
         v_inf_sq: arriving.v_inf_sq,
@@ -30,6 +30,5 @@ pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
         radii: [p],
         orbits: [setting.target],
         coast_s: 0.0,
-    }
-    .plan(setting)
+    })
 }

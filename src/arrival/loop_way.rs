@@ -5,16 +5,16 @@
 
 use super::setting::{Choice, NoPassage, Setting};
 use super::way::{
-    NotFlyable, Objections, Path, Plan, Reason, Way, brake_step, log_grid, lower_step, raise_step,
+    NotFlyable, Objections, Path, Reason, Way, brake_step, log_grid, lower_step, raise_step,
 };
 use crate::numerics::{minimum, root};
 use crate::physics::conic::{self, Orbit};
 
-/// Plans the three burns; brake radius and loop apoapsis are searched where they are left open.
+/// The three burns; brake radius and loop apoapsis are searched where they are left open.
 ///
 /// # Errors
 /// As for dip, and where the loop's apoapsis is over the cap or under the target's.
-pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
+pub(super) fn solve(setting: &Setting) -> Result<Path<3>, NotFlyable> {
     let mut objections = Objections::about_target(setting);
     if let Choice::Radius(q) = setting.brake {
         objections.about_brake(setting, q);
@@ -42,10 +42,8 @@ pub fn plan(setting: &Setting) -> Result<Plan, NotFlyable> {
     }
 }
 
-fn at(setting: &Setting, q: f64, apoapsis: f64) -> Result<Plan, NotFlyable> {
-    path(setting, q, apoapsis)
-        .map_err(|no| NotFlyable::because(Reason::from_no_passage(no, q)))?
-        .plan(setting)
+fn at(setting: &Setting, q: f64, apoapsis: f64) -> Result<Path<3>, NotFlyable> {
+    path(setting, q, apoapsis).map_err(|no| NotFlyable::because(Reason::from_no_passage(no, q)))
 }
 
 #[inline]
@@ -96,7 +94,7 @@ fn bare(setting: &Setting, q: f64, apoapsis: f64) -> Option<f64> {
 /// Nodes of the search over the loop's apoapsis. Nearly always the highest allowed is cheapest; the nodes bracket the
 /// valley that a large plane change can make.
 const APOAPSIS_NODES: usize = 5;
-const BRAKE_NODES: usize = 7;
+const BRAKE_NODES: usize = 6;
 
 /// The highest loop apoapsis that cap and time allow with brake radius q; the target's apoapsis if none.
 ///
@@ -123,7 +121,10 @@ fn highest_apoapsis(setting: &Setting, q: f64) -> f64 {
         });
         free.policy.residual = 0.0;
         free.policy.margin = 0.0;
-        at(&free, q, apoapsis).map_or(coast, |plan| plan.duration_s) - setting.limits.longest_s
+        at(&free, q, apoapsis)
+            .and_then(|path| path.figures(&free))
+            .map_or(coast, |figures| figures.duration_s)
+            - setting.limits.longest_s
     };
     if over(cap) <= 0.0 {
         return cap;
@@ -158,13 +159,16 @@ fn best_brake(setting: &Setting, apoapsis: f64) -> f64 {
 /// The time limit ties the two (a higher q leaves less room for Q), and it does so weakly; two or three rounds
 /// settle. The bound on the rounds only guards against a cycle of equal costs.
 fn best_pair(setting: &Setting) -> (f64, f64) {
-    let mut q = best_brake(
-        setting,
-        highest_apoapsis(setting, setting.limits.floor_radius_km),
-    );
+    let mut tried = highest_apoapsis(setting, setting.limits.floor_radius_km);
+    let mut q = best_brake(setting, tried);
     let mut apoapsis = best_apoapsis(setting, q);
     let mut cost = bare(setting, q, apoapsis);
     for _ in 0..4 {
+        // The brake was searched for this very apoapsis: neither moves any more.
+        if apoapsis == tried {
+            break;
+        }
+        tried = apoapsis;
         let next_q = best_brake(setting, apoapsis);
         let next_apoapsis = best_apoapsis(setting, next_q);
         let next_cost = bare(setting, next_q, next_apoapsis);

@@ -1,10 +1,11 @@
 //! What every way has in common: its name, the plan it returns, the reasons why it cannot be flown.
 
-use super::setting::{NoPassage, Setting};
+use super::setting::{NoPassage, Policy, Setting};
 use super::{dip, direct, loop_way};
 use crate::physics::burn::{SpeedStep, captured_share, split_turn};
 use crate::physics::conic::{self, Orbit};
 use crate::physics::transfer::NoArrival;
+use crate::physics::vehicle::Vehicle;
 use arrayvec::ArrayVec;
 
 /// Most burns that any way makes.
@@ -32,8 +33,6 @@ pub struct WayEntry {
     pub glyph: char,
     /// One sentence for help and documents.
     pub meaning: &'static str,
-    /// What makes a plan of it.
-    pub plan: fn(&Setting) -> Result<Plan, NotFlyable>,
 }
 
 impl Way {
@@ -44,21 +43,18 @@ impl Way {
             name: "direct",
             glyph: '=',
             meaning: "one burn, at the periapsis of the target orbit",
-            plan: direct::plan,
         },
         WayEntry {
             way: Way::Dip,
             name: "dip",
             glyph: 'v',
             meaning: "brake at a low periapsis into an ellipse that reaches the target apoapsis, then raise the periapsis there",
-            plan: dip::plan,
         },
         WayEntry {
             way: Way::Loop,
             name: "loop",
             glyph: 'o',
             meaning: "brake low into a long ellipse, change plane and raise the periapsis far out, come back and brake into the target orbit",
-            plan: loop_way::plan,
         },
     ];
 
@@ -76,6 +72,19 @@ impl Way {
         self.entry().name
     }
 
+    /// The figures of this way's plan for a setting, without the plan.
+    ///
+    /// # Errors
+    /// As [`Way::plan`].
+    #[inline]
+    pub fn figures(self, setting: &Setting) -> Result<Figures, NotFlyable> {
+        match self {
+            Way::Direct => direct::solve(setting)?.figures(setting),
+            Way::Dip => dip::solve(setting)?.figures(setting),
+            Way::Loop => loop_way::solve(setting)?.figures(setting),
+        }
+    }
+
     /// Plans this way for a setting.
     ///
     /// # Errors
@@ -83,9 +92,9 @@ impl Way {
     #[inline]
     pub fn plan(self, setting: &Setting) -> Result<Plan, NotFlyable> {
         match self {
-            Way::Direct => direct::plan(setting),
-            Way::Dip => dip::plan(setting),
-            Way::Loop => loop_way::plan(setting),
+            Way::Direct => direct::solve(setting)?.plan(setting),
+            Way::Dip => dip::solve(setting)?.plan(setting),
+            Way::Loop => loop_way::solve(setting)?.plan(setting),
         }
     }
 }
@@ -111,6 +120,29 @@ pub struct Burn {
     pub propellant_kg: Option<f64>,
     /// Time at full thrust, s, where a vehicle is given.
     pub duration_s: Option<f64>,
+}
+
+/// What a way costs, without its burns: all that a curve or a search asks for. Copies without allocating.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Figures {
+    /// v∞ of the hyperbola it arrives on, km/s.
+    pub v_inf_km_s: f64,
+    /// Δv spent by all burns, before margins, km/s.
+    pub dv_km_s: f64,
+    /// Δv if no burn took time, km/s.
+    pub impulsive_dv_km_s: f64,
+    /// Δv plus the fixed cost of every start after the first: what ways are ranked by, km/s.
+    pub cost_km_s: f64,
+    /// Δv with the margin, km/s.
+    pub dv_with_margin_km_s: f64,
+    /// Coasts plus half the burns, s.
+    pub duration_s: f64,
+    /// Number of burns.
+    pub starts: usize,
+    /// Share of the first burn's own Δv after which the spacecraft is captured.
+    pub captured_share: Option<f64>,
+    /// Masses and times, where a vehicle is given.
+    pub consumption: Option<Consumption>,
 }
 
 /// What a vehicle makes of a plan.
@@ -365,39 +397,85 @@ impl<const N: usize> Path<N> {
         (0..N).map(|k| self.steps[k].dv_km_s(angles[k])).sum()
     }
 
-    /// Asks vehicle, policy and limits, and makes the plan.
+    /// Asks vehicle, policy and limits: what the way costs.
     #[inline]
-    pub(super) fn plan(&self, setting: &Setting) -> Result<Plan, NotFlyable> {
+    pub(super) fn figures(&self, setting: &Setting) -> Result<Figures, NotFlyable> {
+        let (figures, _) = self.weighed(setting)?;
+        Ok(figures)
+    }
+
+    /// The figures with the split of the turn they rest on.
+    #[inline]
+    fn weighed(&self, setting: &Setting) -> Result<(Figures, [f64; N]), NotFlyable> {
         let angles = split_turn(&self.steps, self.turn);
-        let mut burns = ArrayVec::new();
-        let mut dv = 0.0;
-        for k in 0..N {
-            let step = self.steps[k];
-            let spent = step.dv_km_s(angles[k]);
-            dv += spent;
-            burns.push(Burn {
-                at_radius_km: self.radii[k],
-                speed_before_km_s: step.before,
-                speed_after_km_s: step.after,
-                dv_km_s: spent,
-                impulsive_dv_km_s: spent,
-                turn_rad: angles[k],
-                orbit_after: self.orbits[k],
-                propellant_kg: None,
-                duration_s: None,
-            });
-        }
+        let spent: [f64; N] = std::array::from_fn(|k| self.steps[k].dv_km_s(angles[k]));
+        let dv: f64 = spent.iter().sum();
         let policy = &setting.policy;
-        let mut plan = Plan {
-            way: self.way,
-            burns,
+        let mut figures = Figures {
             v_inf_km_s: self.v_inf_sq.sqrt(),
-            turn_rad: self.turn,
             dv_km_s: dv,
             impulsive_dv_km_s: dv,
             cost_km_s: dv + policy.per_start_km_s * (N - 1) as f64,
             dv_with_margin_km_s: dv * (1.0 + policy.margin),
             duration_s: self.coast_s,
+            starts: N,
+            captured_share: captured_share(self.steps[0], angles[0], self.v_inf_sq),
+            consumption: None,
+        };
+        if let Some(vehicle) = &setting.vehicle {
+            let (used, burning) = consume(vehicle, &spent, &figures, policy);
+            figures.consumption = Some(used);
+            figures.duration_s += 0.5 * burning;
+        }
+        figures.hold_to_limits(setting)?;
+        Ok((figures, angles))
+    }
+
+    /// Asks vehicle, policy and limits, and makes the plan.
+    pub(super) fn plan(&self, setting: &Setting) -> Result<Plan, NotFlyable> {
+        let (figures, angles) = self.weighed(setting)?;
+        let mut mass = setting.vehicle.map(|vehicle| vehicle.start_mass_kg());
+        let mut burns = ArrayVec::new();
+        for (k, step) in self.steps.iter().enumerate() {
+            let dv_km_s = step.dv_km_s(angles[k]);
+            let propellant_kg = setting
+                .vehicle
+                .zip(mass)
+                .map(|(vehicle, mass)| vehicle.propellant_for_kg(mass, dv_km_s));
+            mass = mass.zip(propellant_kg).map(|(mass, used)| mass - used);
+            burns.push(Burn {
+                at_radius_km: self.radii[k],
+                speed_before_km_s: step.before,
+                speed_after_km_s: step.after,
+                dv_km_s,
+                impulsive_dv_km_s: dv_km_s,
+                turn_rad: angles[k],
+                orbit_after: self.orbits[k],
+                propellant_kg,
+                duration_s: setting
+                    .vehicle
+                    .zip(propellant_kg)
+                    .map(|(vehicle, used)| vehicle.burn_time_s(used)),
+            });
+        }
+        let captured_after_s =
+            setting
+                .vehicle
+                .zip(figures.captured_share)
+                .map(|(vehicle, share)| {
+                    let spent = share * self.steps[0].dv_km_s(angles[0]);
+                    vehicle.burn_time_s(vehicle.propellant_for_kg(vehicle.start_mass_kg(), spent))
+                });
+        Ok(Plan {
+            way: self.way,
+            burns,
+            v_inf_km_s: figures.v_inf_km_s,
+            turn_rad: self.turn,
+            dv_km_s: figures.dv_km_s,
+            impulsive_dv_km_s: figures.impulsive_dv_km_s,
+            cost_km_s: figures.cost_km_s,
+            dv_with_margin_km_s: figures.dv_with_margin_km_s,
+            duration_s: figures.duration_s,
             brake_radius_km: self.brake_radius_km,
             lowest_radius_km: self.brake_radius_km,
             aiming_radius_km: conic::aiming_radius_km(
@@ -405,48 +483,43 @@ impl<const N: usize> Path<N> {
                 self.v_inf_sq,
                 self.brake_radius_km,
             ),
-            captured_share: captured_share(self.steps[0], angles[0], self.v_inf_sq),
-            captured_after_s: None,
-            consumption: None,
-        };
-        plan.consume(setting);
-        plan.hold_to_limits(setting)?;
-        Ok(plan)
+            captured_share: figures.captured_share,
+            captured_after_s,
+            consumption: figures.consumption,
+        })
     }
 }
 
-impl Plan {
-    /// Rocket equation over the burns, where a vehicle is given.
-    fn consume(&mut self, setting: &Setting) {
-        let Some(vehicle) = setting.vehicle else {
-            return;
-        };
-        let start = vehicle.start_mass_kg();
-        let mut mass = start;
-        let (mut longest, mut total) = (0.0_f64, 0.0);
-        for burn in &mut self.burns {
-            let propellant = vehicle.propellant_for_kg(mass, burn.dv_km_s);
-            let duration = vehicle.burn_time_s(propellant);
-            mass -= propellant;
-            longest = longest.max(duration);
-            total += duration;
-            burn.propellant_kg = Some(propellant);
-            burn.duration_s = Some(duration);
-        }
-        self.duration_s += 0.5 * total;
-        let with_margin = vehicle.propellant_for_kg(start, self.dv_with_margin_km_s);
-        self.captured_after_s = self.captured_share.map(|share| {
-            vehicle.burn_time_s(vehicle.propellant_for_kg(start, share * self.burns[0].dv_km_s))
-        });
-        self.consumption = Some(Consumption {
-            propellant_kg: start - mass,
-            propellant_with_margin_kg: with_margin * (1.0 + setting.policy.residual),
-            final_mass_kg: mass,
-            longest_burn_s: longest,
-        });
+/// Rocket equation over the burns: masses and the longest burn, and the time all burns take together, s.
+fn consume(
+    vehicle: &Vehicle,
+    spent: &[f64],
+    figures: &Figures,
+    policy: &Policy,
+) -> (Consumption, f64) {
+    let start = vehicle.start_mass_kg();
+    let mut mass = start;
+    let (mut longest, mut burning) = (0.0_f64, 0.0);
+    for dv in spent {
+        let propellant = vehicle.propellant_for_kg(mass, *dv);
+        let duration = vehicle.burn_time_s(propellant);
+        mass -= propellant;
+        longest = longest.max(duration);
+        burning += duration;
     }
+    let with_margin = vehicle.propellant_for_kg(start, figures.dv_with_margin_km_s);
+    let used = Consumption {
+        propellant_kg: start - mass,
+        propellant_with_margin_kg: with_margin * (1.0 + policy.residual),
+        final_mass_kg: mass,
+        longest_burn_s: longest,
+    };
+    (used, burning)
+}
 
+impl Figures {
     /// Holds times, starts and masses against the limits.
+    #[inline]
     fn hold_to_limits(&self, setting: &Setting) -> Result<(), NotFlyable> {
         let limits = &setting.limits;
         let mut objections = Objections::default();
@@ -456,9 +529,9 @@ impl Plan {
                 limit: limits.longest_s,
             });
         }
-        if limits.most_starts < self.starts() {
+        if limits.most_starts < self.starts {
             objections.add(Reason::TooManyStarts {
-                needs: self.starts(),
+                needs: self.starts,
                 limit: limits.most_starts,
             });
         }

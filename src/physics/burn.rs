@@ -112,7 +112,13 @@ pub fn split_turn<const N: usize>(steps: &[SpeedStep; N], total: f64) -> [f64; N
     let quarter = path.angles(1.0, 0.0);
     let sum_quarter: f64 = quarter.iter().sum();
     if total <= sum_quarter {
-        path.refine(total, 0.0, FRAC_PI_2, &mut best);
+        // For small turns every angle is λ|u − w|/(uw); that guess saves Newton most of its steps.
+        let compliance: f64 = steps
+            .iter()
+            .map(|step| step.difference.abs() / (step.before * step.after))
+            .sum();
+        let guess = (total / (compliance * limit)).min(0.95).asin();
+        path.refine(total, (0.0, FRAC_PI_2), guess, &mut best);
         // On the far side this burn alone turns by more than its angle at λ = L. If that already costs
         // more than what was found, the far side is out.
         let far_floor: f64 = (0..N)
@@ -197,7 +203,7 @@ impl<const N: usize> Path<'_, N> {
             let right = from + (to - from) * f64::from(k) / f64::from(CELLS);
             let right_below = k != CELLS && self.sum_at(right) < total;
             if below && !right_below {
-                self.refine(total, left, right, best);
+                self.refine(total, (left, right), 0.5 * (left + right), best);
             }
             left = right;
             below = right_below;
@@ -209,10 +215,14 @@ impl<const N: usize> Path<'_, N> {
         self.angles(sine, cosine).iter().sum()
     }
 
-    /// Safeguarded Newton for one upward crossing inside `[low, high]`.
-    fn refine(&self, total: f64, low: f64, high: f64, best: &mut Best<N>) {
-        let (mut low, mut high) = (low, high);
-        let mut phi = 0.5 * (low + high);
+    /// Safeguarded Newton for one upward crossing inside a bracket, from a first guess in it.
+    fn refine(&self, total: f64, bracket: (f64, f64), guess: f64, best: &mut Best<N>) {
+        let (mut low, mut high) = bracket;
+        let mut phi = if low < guess && guess < high {
+            guess
+        } else {
+            0.5 * (low + high)
+        };
         for _ in 0..60 {
             let (sum, slope) = self.sum_and_slope(phi);
             let excess = sum - total;
@@ -223,7 +233,7 @@ impl<const N: usize> Path<'_, N> {
             }
             // The cost is stationary here, so 1e-9 in the angle is far below a rounding error of the cost; the
             // remainder is handed out exactly by the caller.
-            if excess.abs() <= 1e-12 * total || high - low <= 1e-15 * high {
+            if excess.abs() <= 1e-9 * total || high - low <= 1e-15 * high {
                 break;
             }
             let newton = phi - excess / slope;

@@ -156,7 +156,8 @@ impl ParentTransfer {
         transfer.fixed_v_inf_sq = match input.model {
             Model::Textbook => transfer.crossing_speed_sq(parent_gm).unwrap_or(0.0),
             Model::BoundarySpeed => {
-                transfer.crossing_speed_sq(total).unwrap_or(0.0) - 2.0 * body_gm / transfer.sphere_km
+                transfer.crossing_speed_sq(total).unwrap_or(0.0)
+                    - 2.0 * body_gm / transfer.sphere_km
             }
             Model::Patched | Model::ThreeBody => {
                 transfer.momentum_span = transfer.span();
@@ -382,22 +383,23 @@ impl ParentTransfer {
                 (low.min(value), high.max(value))
             }));
         };
+        let mut before = None;
         for k in 0..=ENTRY_NODES {
-            match at(node(k)) {
-                Some(value) => {
-                    take(value);
-                    // The extreme between nodes: a parabola's worth is enough for a border that is itself approximate.
-                    for side in [-1.0, 1.0] {
-                        let step = 2.0 * PI / f64::from(ENTRY_NODES);
-                        let (_, edge) =
-                            root::border(|x| at(x).is_some(), node(k) + side * step, node(k));
-                        if let Some(value) = at(edge) {
-                            take(value);
-                        }
-                    }
+            let here = at(node(k));
+            // The region of entries begins or ends between two nodes: its border counts too. Extremes between two
+            // nodes of 4° are passed over; the reach is approximate anyway.
+            let edge = match (before, here) {
+                (Some(_), None) => Some(root::border(|x| at(x).is_some(), node(k - 1), node(k)).0),
+                (None, Some(_)) if 0 < k => {
+                    Some(root::border(|x| at(x).is_some(), node(k - 1), node(k)).1)
                 }
-                None => continue,
-            }
+                _ => None,
+            };
+            edge.and_then(at)
+                .into_iter()
+                .chain(here)
+                .for_each(&mut take);
+            before = here;
         }
         span.unwrap_or((0.0, 0.0))
     }
@@ -551,7 +553,11 @@ mod tests {
             matches!(near.v_inf_sq(1837.4), Err(NoArrival::OutOfReach { farthest_km }) if farthest_km < 10.0)
         );
         let far = earth_moon(Model::ThreeBody, 400_000.0, -1.0);
-        assert!(far.v_inf_sq(8000.0).is_ok(), "{far:?} {:?}", far.v_inf_sq(8000.0));
+        assert!(
+            far.v_inf_sq(8000.0).is_ok(),
+            "{far:?} {:?}",
+            far.v_inf_sq(8000.0)
+        );
         match far.v_inf_sq(20_000.0) {
             Err(NoArrival::OutOfReach { farthest_km }) => {
                 assert!((9_500.0..11_000.0).contains(&farthest_km), "{farthest_km}");

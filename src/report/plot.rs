@@ -103,7 +103,7 @@ pub struct Plot<'a> {
     pub rows: &'a [Row],
     /// The axis the rows were swept over.
     pub axis: Axis,
-    /// Name and unit of the horizontal axis.
+    /// Name and unit of the horizontal axis; up to seven characters stand beside the labels instead of among them.
     pub x_title: &'a str,
     /// What is drawn.
     pub quantity: Quantity,
@@ -334,9 +334,16 @@ fn draw_axes(picture: &mut Picture, plot: &Plot, frame: &Frame) {
 
 fn draw_x_labels(picture: &mut Picture, plot: &Plot, frame: &Frame, axis_y: usize) {
     let scale = &frame.x_scale;
+    // A short title stands in the gutter, where it takes no room from the ticks.
     let title = plot.x_title;
-    let title_at = (GUTTER + scale.cells).saturating_sub(title.len());
-    picture.write(title_at, axis_y + 1, title, Role::Label);
+    let title_at = if title.len() < GUTTER {
+        picture.write(0, axis_y + 1, title, Role::Label);
+        picture.width + 2
+    } else {
+        let at = (GUTTER + scale.cells).saturating_sub(title.len());
+        picture.write(at, axis_y + 1, title, Role::Label);
+        at
+    };
     // `here` has its word where it fits; tick labels make room for it.
     let here = plot.here.and_then(|here| scale.cell(here));
     let mut free_from = 0;
@@ -357,7 +364,7 @@ fn draw_x_labels(picture: &mut Picture, plot: &Plot, frame: &Frame, axis_y: usiz
         let at = (GUTTER + cell).saturating_sub(text.len() / 2);
         let end = at + text.len();
         let clear = taken.iter().all(|(from, to)| end < *from || *to < at);
-        if free_from <= at && end + 1 < title_at && clear {
+        if free_from <= at && end + 1 < title_at && end <= picture.width && clear {
             picture.write(at, axis_y + 1, &text, Role::Label);
             free_from = end + 1;
         }

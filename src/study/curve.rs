@@ -3,7 +3,7 @@
 use super::answer::cheapest;
 use super::case::Case;
 use super::knob::{Knob, KnobId, Refused, Value};
-use crate::arrival::{NotFlyable, Plan, Setting, Way};
+use crate::arrival::{Figures, NotFlyable, Plan, Setting, Way};
 
 /// What is kept of a plan at one point of a curve. km/s, s, kg.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -26,6 +26,22 @@ pub struct Sample {
     pub longest_burn_s: Option<f64>,
     /// Share of the first burn's Δv after which the spacecraft is captured.
     pub captured_share: Option<f64>,
+}
+
+impl From<&Figures> for Sample {
+    fn from(figures: &Figures) -> Self {
+        Self {
+            cost_km_s: figures.cost_km_s,
+            dv_km_s: figures.dv_km_s,
+            impulsive_dv_km_s: figures.impulsive_dv_km_s,
+            propellant_kg: figures.consumption.map(|used| used.propellant_kg),
+            final_mass_kg: figures.consumption.map(|used| used.final_mass_kg),
+            duration_s: figures.duration_s,
+            starts: figures.starts,
+            longest_burn_s: figures.consumption.map(|used| used.longest_burn_s),
+            captured_share: figures.captured_share,
+        }
+    }
 }
 
 impl From<&Plan> for Sample {
@@ -61,8 +77,8 @@ impl Point {
         let ways = std::array::from_fn(|k| {
             Way::TABLE[k]
                 .way
-                .plan(setting)
-                .map(|plan| Sample::from(&plan))
+                .figures(setting)
+                .map(|figures| Sample::from(&figures))
         });
         Self {
             x,

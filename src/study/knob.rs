@@ -596,6 +596,24 @@ impl Knob {
         }
     }
 
+    /// Whether the scenario has this value or can be given it by typing one.
+    pub fn offered(&self, case: &Case) -> bool {
+        if self.read(case).is_ok() {
+            return true;
+        }
+        match self.id {
+            K::Inclination | K::PlaneChange | K::LongestBurn => true,
+            K::Declination => {
+                matches!(
+                    case.spec().arrival,
+                    ArrivalSpec::Asymptote { .. } | ArrivalSpec::Energy { .. }
+                )
+            }
+            K::ParkingAltitude => matches!(case.spec().arrival, ArrivalSpec::Transfer { .. }),
+            _ => false,
+        }
+    }
+
     /// Whether the knob is an altitude over the body.
     pub fn is_altitude(&self) -> bool {
         matches!(

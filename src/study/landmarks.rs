@@ -82,10 +82,15 @@ pub fn at_radius(setting: &Setting, radius_km: f64) -> Setting {
 
 /// Finds the landmarks of a setting.
 pub fn landmarks(setting: &Setting) -> Landmarks {
+    scanned(setting, SCAN_POINTS)
+}
+
+/// The landmarks from a scan of `points` nodes: fewer find the same places faster, but may miss two that lie close.
+pub fn scanned(setting: &Setting, points: usize) -> Landmarks {
     let Some((low, high)) = sensible_range(setting) else {
         return Landmarks::default();
     };
-    let grid = grid(setting, low, high);
+    let grid = grid(setting, low, high, points.max(2));
     let nodes: Vec<Node> = grid
         .iter()
         .map(|&radius| Node::ask(setting, radius))
@@ -97,13 +102,13 @@ pub fn landmarks(setting: &Setting) -> Landmarks {
 }
 
 /// Log-spaced radii; nodes crowd just above the brake radius, where dip and loop begin and r = q is a trivial tie.
-fn grid(setting: &Setting, low: f64, high: f64) -> Vec<f64> {
+fn grid(setting: &Setting, low: f64, high: f64, points: usize) -> Vec<f64> {
     let span = (high / low).ln();
-    let mut grid: Vec<f64> = (0..SCAN_POINTS)
-        .map(|k| low * (span * k as f64 / (SCAN_POINTS - 1) as f64).exp())
+    let mut grid: Vec<f64> = (0..points)
+        .map(|k| low * (span * k as f64 / (points - 1) as f64).exp())
         .collect();
     grid[0] = low;
-    grid[SCAN_POINTS - 1] = high;
+    grid[points - 1] = high;
     let brake = match setting.brake {
         Choice::Radius(brake) => brake,
         Choice::Best => low,
@@ -133,9 +138,9 @@ impl Node {
         let costs: [Option<(f64, usize)>; Way::COUNT] = std::array::from_fn(|k| {
             Way::TABLE[k]
                 .way
-                .plan(&here)
+                .figures(&here)
                 .ok()
-                .map(|plan| (plan.cost_km_s, plan.starts()))
+                .map(|figures| (figures.cost_km_s, figures.starts))
         });
         let best = cheapest(
             Way::TABLE
@@ -156,9 +161,9 @@ impl Node {
 }
 
 fn cost_at(setting: &Setting, way: Way, radius: f64) -> Option<f64> {
-    way.plan(&at_radius(setting, radius))
+    way.figures(&at_radius(setting, radius))
         .ok()
-        .map(|plan| plan.cost_km_s)
+        .map(|figures| figures.cost_km_s)
 }
 
 fn cheapest_direct(setting: &Setting, grid: &[f64], nodes: &[Node]) -> Option<Cheapest> {
@@ -187,10 +192,13 @@ fn crossovers(setting: &Setting, nodes: &[Node]) -> Vec<Crossover> {
             _ => {}
         }
     }
-    // Where dip and loop begin, at the brake radius, the change is not a crossover but the brake itself.
-    if let Choice::Radius(brake) = setting.brake {
-        found.retain(|crossover: &Crossover| brake * (1.0 + 2e-6) < crossover.radius_km);
-    }
+    // Where dip and loop begin, at the brake radius (the floor, where the program chooses it), the change is not a
+    // crossover but the brake itself.
+    let brake = match setting.brake {
+        Choice::Radius(brake) => brake,
+        Choice::Best => setting.limits.floor_radius_km,
+    };
+    found.retain(|crossover: &Crossover| brake * (1.0 + 2e-6) < crossover.radius_km);
     found
 }
 

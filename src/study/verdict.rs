@@ -278,7 +278,8 @@ fn shift(setting: &Setting, answer: &Answer, nearest: Option<Crossover>, cause: 
         .and_then(|best| flyable().find(|(way, _)| *way == best))
         .map(|(_, plan)| plan.cost_km_s);
     let crossover_without_km = nearest.and_then(|nearest| {
-        let marks = landmarks::landmarks(&other);
+        // A quarter of the nodes: one crossover is followed, not all of them found.
+        let marks = landmarks::scanned(&other, landmarks::SCAN_POINTS / 4);
         marks
             .crossovers
             .iter()

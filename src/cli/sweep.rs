@@ -1,0 +1,118 @@
+//! `stoop sweep`: a curve over one knob, a map over two.
+
+use super::args::{SweepArgs, SweepFormat};
+use super::{Outcome, output, source};
+use crate::report::sweep::Sweep;
+use crate::scenario::write;
+use crate::study::curve::{self, Axis, Cell, MOST_POINTS};
+use crate::study::entry;
+use crate::study::knob::{Knob, KnobId, Value};
+use crate::study::{Case, landmarks};
+use anyhow::{Result, anyhow, bail};
+
+pub(super) fn run(args: &SweepArgs) -> Result<Outcome> {
+    let loaded = source::open(&args.source.file, &args.source.set)?;
+    let case = &loaded.case;
+    let first = axis(
+        case,
+        source::find(&args.over)?,
+        args.from.as_deref(),
+        args.to.as_deref(),
+        args.points,
+        args.log,
+    )?;
+    let second = match &args.and {
+        None => None,
+        Some(name) => {
+            let knob = source::find(name)?;
+            if knob.id == first.knob.id {
+                bail!(
+                    "--over and --and are both {}; a map needs two different knobs",
+                    knob.name
+                );
+            }
+            Some(axis(
+                case,
+                knob,
+                args.and_from.as_deref(),
+                args.and_to.as_deref(),
+                args.and_points,
+                args.and_log,
+            )?)
+        }
+    };
+    let cells = match &second {
+        None => curve::curve(case, &first)
+            .into_iter()
+            .map(|row| Cell { y: 0.0, row })
+            .collect(),
+        Some(second) => {
+            if MOST_POINTS < first.points.saturating_mul(second.points) {
+                bail!(
+                    "{} x {} values are not allowed: at most {MOST_POINTS} together",
+                    first.points,
+                    second.points
+                );
+            }
+            curve::map(case, &first, second)
+        }
+    };
+    let sweep = Sweep {
+        case,
+        first,
+        second,
+        cells,
+        fingerprint: write::fingerprint(case.spec()),
+    };
+    let text = match args.format {
+        SweepFormat::Text => sweep.text(),
+        SweepFormat::Csv => sweep.csv(),
+        SweepFormat::Json => sweep.json(),
+        SweepFormat::Svg => sweep.svg(),
+    };
+    output::put(&args.output, &text)?;
+    Ok(Outcome::of(sweep.flyable()))
+}
+
+fn axis(
+    case: &Case,
+    knob: &'static Knob,
+    from: Option<&str>,
+    to: Option<&str>,
+    points: usize,
+    log: bool,
+) -> Result<Axis> {
+    // A knob that the scenario cannot have at all is refused before anything is computed.
+    if !knob.offered(case)
+        && let Err(why) = knob.read(case)
+    {
+        bail!("{}: {why}", knob.name);
+    }
+    let sensible = || {
+        (knob.id == KnobId::TargetAltitude)
+            .then(|| landmarks::sensible_range(case.setting()))
+            .flatten()
+    };
+    let end = |text: Option<&str>, name: &str, pick: fn((f64, f64)) -> f64| -> Result<f64> {
+        match text {
+            Some(text) => match entry::parse(knob, text).map_err(|why| anyhow!("{name}: {why}"))? {
+                Value::Number(number) => Ok(number),
+                Value::Best => bail!("{name} takes a number, not `best`"),
+            },
+            None => sensible()
+                .map(|range| case.altitude_km(pick(range)))
+                .ok_or_else(|| {
+                    anyhow!(
+                        "{} needs --from and --to ({})",
+                        knob.name,
+                        knob.range_field().range()
+                    )
+                }),
+        }
+    };
+    let (from, to) = (
+        end(from, "--from", |range| range.0)?,
+        end(to, "--to", |range| range.1)?,
+    );
+    Axis::new(knob, from, to, points, log).map_err(|why| anyhow!(why))
+}

@@ -1,0 +1,292 @@
+//! The brief: the written result for a review. Gathered once, rendered as text, Markdown or JSON.
+
+mod json;
+pub(in crate::report) use json::landmarks_value;
+mod markdown;
+mod text;
+
+use super::plot::{self, Glyphs, Mark, Plot, Quantity};
+use super::words;
+use crate::arrival::Way;
+use crate::study::curve::{self, Axis, Row};
+use crate::study::knob::{KnobId, by_id};
+use crate::study::landmarks;
+use crate::study::verdict::{self, Verdict};
+use crate::study::warning::{self, Warning};
+use crate::study::{Answer, Case};
+
+/// Everything a brief says about a case.
+#[derive(Debug)]
+pub struct Brief<'a> {
+    /// The scenario.
+    pub case: &'a Case,
+    /// Every way, the cheapest, the landmarks.
+    pub answer: Answer,
+    /// The verdict weighed.
+    pub verdict: Verdict,
+    /// The verdict in words.
+    pub sentence: String,
+    /// Its reason.
+    pub why: String,
+    /// What moves it.
+    pub shifts: Vec<String>,
+    /// Warnings.
+    pub warnings: Vec<Warning>,
+    /// Fingerprint of the scenario.
+    pub fingerprint: String,
+}
+
+impl<'a> Brief<'a> {
+    /// Asks everything a brief needs.
+    pub fn of(case: &'a Case, fingerprint: String) -> Self {
+        let answer = Answer::of(case);
+        let verdict = verdict::verdict(case.setting(), &answer);
+        Self {
+            sentence: words::verdict(case, &answer, &verdict),
+            why: words::why(case, &verdict),
+            shifts: words::shifts(case, &answer, &verdict),
+            warnings: warning::warnings(case, &answer),
+            case,
+            answer,
+            verdict,
+            fingerprint,
+        }
+    }
+
+    /// Whether any way can be flown.
+    pub fn flyable(&self) -> bool {
+        self.answer.best.is_some()
+    }
+
+    /// As plain text of at most 80 columns, 7-bit.
+    pub fn text(&self, glyphs: Glyphs) -> String {
+        text::render(self, glyphs)
+    }
+
+    /// As Markdown.
+    pub fn markdown(&self) -> String {
+        markdown::render(self)
+    }
+
+    /// As JSON, see `docs/output.md`.
+    pub fn json(&self) -> String {
+        json::render(self)
+    }
+
+    /// The cost curve over the sensible range as lines of characters.
+    fn curve(&self, width: usize, height: usize, glyphs: Glyphs) -> Vec<String> {
+        let case = self.case;
+        let Some((low, high)) = landmarks::sensible_range(case.setting()) else {
+            return Vec::new();
+        };
+        let to = case.altitude_km(high);
+        let from = case.altitude_km(low).max(1e-4 * to);
+        let Ok(axis) = Axis::new(
+            by_id(KnobId::TargetAltitude),
+            from,
+            to,
+            plot::columns(width),
+            true,
+        ) else {
+            return Vec::new();
+        };
+        let rows: Vec<Row> = curve::curve(case, &axis);
+        let mark = |way: Way, radius: f64| {
+            let figures = way
+                .figures(&landmarks::at_radius(case.setting(), radius))
+                .ok()?;
+            Some(Mark {
+                x: case.altitude_km(radius),
+                y: 1e3 * figures.cost_km_s,
+            })
+        };
+        let marks = &self.answer.landmarks;
+        let crossovers: Vec<Mark> = marks
+            .crossovers
+            .iter()
+            .filter_map(|crossover| mark(crossover.below, crossover.radius_km))
+            .collect();
+        let plot = Plot {
+            rows: &rows,
+            axis,
+            x_title: "alt, km",
+            quantity: Quantity::Cost,
+            y_log: false,
+            here: Some(case.altitude_km(case.setting().target.periapsis_km)),
+            cheapest: marks
+                .cheapest
+                .and_then(|cheapest| mark(Way::Direct, cheapest.radius_km)),
+            crossovers: &crossovers,
+            glyphs,
+        };
+        plot::draw(&plot, width, height).lines()
+    }
+}
+
+/// The inclination line of a target: what is asked for and what it takes.
+fn plane(case: &Case) -> String {
+    use crate::physics::asymptote;
+    use crate::study::spec::PlaneSpec;
+    match (case.spec().target.plane, case.declination_rad()) {
+        (PlaneSpec::Any, _) => "any plane".to_owned(),
+        (PlaneSpec::PlaneChangeDeg(turn), _) => format!("plane change of {turn} deg for every way"),
+        (PlaneSpec::InclinationDeg(inclination), None) => format!("inclination {inclination} deg"),
+        (PlaneSpec::InclinationDeg(inclination), Some(declination)) => {
+            let (low, high) = asymptote::free_inclination_rad(declination);
+            let free = format!(
+                "free range {} to {}",
+                words::degrees(low),
+                words::degrees(high)
+            );
+            match asymptote::b_plane_angle_rad(inclination.to_radians(), declination) {
+                Some(angle) => {
+                    let angle = words::degrees(angle);
+                    format!(
+                        "inclination {inclination} deg ({free}; B-plane angle {angle} or -{angle})"
+                    )
+                }
+                None => format!("inclination {inclination} deg, outside the {free}"),
+            }
+        }
+    }
+}
+
+/// Heading, arrival and target as short lines.
+fn facts(brief: &Brief) -> Vec<(&'static str, String)> {
+    let case = brief.case;
+    let setting = case.setting();
+    let body = case.body();
+    let mut facts = vec![(
+        "body",
+        format!(
+            "{}, GM {} km3/s2, radius {}",
+            crate::visible::ascii(&body.name),
+            body.gm_km3_s2,
+            words::km(body.radius_km)
+        ),
+    )];
+    let v_inf = setting
+        .approach
+        .v_inf_sq(setting.target.periapsis_km)
+        .ok()
+        .map(f64::sqrt);
+    let arrival = match v_inf {
+        Some(v_inf) => format!(
+            "v_inf {} at the target periapsis ({})",
+            words::speed(v_inf),
+            super::sources::arrival_model(&case.spec().arrival)
+        ),
+        None => format!(
+            "no hyperbola at the target periapsis ({})",
+            super::sources::arrival_model(&case.spec().arrival)
+        ),
+    };
+    facts.push(("arrival", arrival));
+    if let Some(radius) = brief.verdict.radii.break_even_km {
+        facts.push((
+            "break-even",
+            format!("radius {} (2 mu/v_inf^2)", words::km(radius)),
+        ));
+    }
+    facts.push((
+        "target",
+        format!(
+            "{}, period {}, {}",
+            words::target(case),
+            words::time(setting.target.period_s(setting.gm)),
+            plane(case)
+        ),
+    ));
+    let limits = &setting.limits;
+    facts.push((
+        "limits",
+        format!(
+            "floor {}, cap {} radius, {}, {}{}",
+            words::altitude(case.altitude_km(limits.floor_radius_km)),
+            words::km(limits.cap_radius_km),
+            words::time(limits.longest_s),
+            words::starts(limits.most_starts),
+            if limits.longest_burn_s.is_finite() {
+                format!(", longest burn {}", words::time(limits.longest_burn_s))
+            } else {
+                String::new()
+            }
+        ),
+    ));
+    if let Some(vehicle) = &setting.vehicle {
+        facts.push((
+            "vehicle",
+            format!(
+                "{} dry, {} propellant, {} N, Isp {} s",
+                words::kg(vehicle.dry_mass_kg),
+                words::kg(vehicle.propellant_kg),
+                vehicle.thrust_n,
+                vehicle.isp_s
+            ),
+        ));
+    }
+    let policy = &case.spec().policy;
+    facts.push((
+        "policy",
+        format!(
+            "margin {} %, {} m/s for every extra start, residuals {} %",
+            policy.margin_percent, policy.per_start_m_s, policy.residual_percent
+        ),
+    ));
+    let journey = case.journey();
+    if let Some(departure) = journey.departure_dv_km_s {
+        let total = brief.answer.best_plan().map_or_else(String::new, |plan| {
+            format!(
+                "; with the arrival {} in all",
+                words::dv(departure + plan.dv_km_s)
+            )
+        });
+        facts.push((
+            "departure",
+            format!("burn of {}{total}", words::dv(departure)),
+        ));
+    }
+    if let Some(flight) = journey.time_of_flight_s {
+        facts.push((
+            "transfer",
+            format!("{} to the periapsis", words::time(flight)),
+        ));
+    }
+    facts
+}
+
+/// Landmarks as sentences.
+fn landmark_lines(brief: &Brief) -> Vec<String> {
+    let case = brief.case;
+    let mut lines = Vec::new();
+    match brief.answer.landmarks.cheapest {
+        Some(cheapest) => lines.push(format!(
+            "cheapest direct altitude {} ({}){}",
+            words::altitude(case.altitude_km(cheapest.radius_km)),
+            words::dv(cheapest.dv_km_s),
+            if cheapest.at_border {
+                ", held there by a limit"
+            } else {
+                ""
+            }
+        )),
+        None => lines.push("direct can be flown nowhere in the range".to_owned()),
+    }
+    for crossover in &brief.answer.landmarks.crossovers {
+        let kind = match crossover.kind {
+            landmarks::CrossoverKind::Tie => "",
+            landmarks::CrossoverKind::Limit => ", where a limit binds",
+        };
+        lines.push(format!(
+            "crossover at {} ({}): {} below, {} above{kind}",
+            words::altitude(case.altitude_km(crossover.radius_km)),
+            words::dv(crossover.dv_km_s),
+            crossover.below.name(),
+            crossover.above.name()
+        ));
+    }
+    if brief.answer.landmarks.crossovers.is_empty() {
+        lines.push("no crossover in the range: the same way is cheapest all along".to_owned());
+    }
+    lines
+}

@@ -1,0 +1,13 @@
+//! The integration tests, one binary with a module for each concern.
+
+mod bad;
+mod cli;
+mod computed;
+mod properties;
+mod published;
+mod scenarios;
+mod screens;
+#[cfg(unix)]
+mod terminal;
+mod tidy;
+mod ties;
