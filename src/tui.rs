@@ -118,9 +118,7 @@ fn carry_out(
         match effect {
             Effect::Quit => return Ok(Some(0)),
             Effect::Repaint => {
-                screen
-                    .clear()
-                    .context("the terminal cannot be written to")?;
+                terminal::forget(screen)?;
                 let (width, height) = crossterm::terminal::size().unwrap_or(model.size);
                 update(model, Msg::Resize(width, height));
             }

@@ -9,6 +9,7 @@ use crossterm::terminal::{
 };
 use ratatui::Terminal;
 use ratatui::backend::CrosstermBackend;
+use ratatui::layout::{Position, Rect};
 use std::io::{self, BufWriter, Stdout};
 use std::sync::Once;
 use std::sync::atomic::{AtomicBool, Ordering};
@@ -49,7 +50,19 @@ pub(super) fn enter() -> anyhow::Result<Screen> {
 /// Takes the terminal again after the shell had it, and forgets what was drawn.
 pub(super) fn enter_again(screen: &mut Screen) -> anyhow::Result<()> {
     take().context("the terminal cannot be taken back")?;
-    screen.clear().context("the terminal cannot be written to")
+    forget(screen)
+}
+
+/// Clears the screen and forgets what was drawn, so that the next frame is drawn whole.
+///
+/// Not `Terminal::clear`: that asks the terminal for its cursor, and the answer would go to the thread that reads keys.
+pub(super) fn forget(screen: &mut Screen) -> anyhow::Result<()> {
+    let size = screen
+        .size()
+        .context("the size of the terminal is not known")?;
+    screen
+        .resize(Rect::from((Position::ORIGIN, size)))
+        .context("the terminal cannot be written to")
 }
 
 fn take() -> io::Result<()> {

@@ -14,7 +14,12 @@ fn every_shipped_scenario_answers_and_checks() {
         let answer = Answer::of(case);
         assert!(answer.best.is_some(), "{name}: nothing flyable");
         for check in check::check(case, &answer) {
-            assert!(check.passed(), "{name}: {} differs by {:e}", check.name, check.difference());
+            assert!(
+                check.passed(),
+                "{name}: {} differs by {:e}",
+                check.name,
+                check.difference()
+            );
         }
         let verdict = verdict(case.setting(), &answer);
         headlines.push_str(&format!(
@@ -42,14 +47,26 @@ fn every_file_in_the_folder_ships() {
     let folder = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("scenarios");
     let mut names: Vec<String> = std::fs::read_dir(folder)
         .expect("folder")
-        .map(|entry| entry.expect("entry").file_name().to_string_lossy().into_owned())
+        .map(|entry| {
+            entry
+                .expect("entry")
+                .file_name()
+                .to_string_lossy()
+                .into_owned()
+        })
         .filter(|name| name.ends_with(".ron"))
         .collect();
     names.sort();
     let mut shipped: Vec<String> = file::SHIPPED
         .iter()
         .map(|(name, _)| name.rsplit('/').next().unwrap_or(name).to_owned())
-        .map(|name| if name.ends_with(".ron") { name } else { format!("{name}.ron") })
+        .map(|name| {
+            if name.ends_with(".ron") {
+                name
+            } else {
+                format!("{name}.ron")
+            }
+        })
         .collect();
     shipped.sort();
     assert_eq!(names, shipped);

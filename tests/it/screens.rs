@@ -28,8 +28,11 @@ fn type_keys(model: &mut Model, text: &str) {
 }
 
 fn draw(model: &Model) -> Terminal<TestBackend> {
-    let mut terminal = Terminal::new(TestBackend::new(model.size.0, model.size.1)).expect("test backend");
-    terminal.draw(|frame| view(model, Theme::COLOURED, frame)).expect("drawn");
+    let mut terminal =
+        Terminal::new(TestBackend::new(model.size.0, model.size.1)).expect("test backend");
+    terminal
+        .draw(|frame| view(model, Theme::COLOURED, frame))
+        .expect("drawn");
     terminal
 }
 
@@ -40,7 +43,13 @@ fn text(model: &Model) -> String {
     buffer
         .content
         .chunks(width)
-        .map(|row| row.iter().map(|cell| cell.symbol()).collect::<String>().trim_end().to_owned())
+        .map(|row| {
+            row.iter()
+                .map(|cell| cell.symbol())
+                .collect::<String>()
+                .trim_end()
+                .to_owned()
+        })
         .collect::<Vec<_>>()
         .join("\n")
 }
@@ -139,7 +148,11 @@ fn colour_repeats_the_glyph() {
             for entry in Way::TABLE {
                 if cell.symbol() == entry.glyph.to_string() {
                     seen[entry.way as usize] = true;
-                    assert_eq!(cell.fg, Theme::COLOURED.way(entry.way).fg.unwrap_or(Color::Reset), "{x} {y}");
+                    assert_eq!(
+                        cell.fg,
+                        Theme::COLOURED.way(entry.way).fg.unwrap_or(Color::Reset),
+                        "{x} {y}"
+                    );
                 }
             }
             if cell.symbol() == "X" || cell.symbol() == "*" {
@@ -154,7 +167,9 @@ fn colour_repeats_the_glyph() {
 fn without_colour_nothing_has_a_colour() {
     let model = model((120, 40));
     let mut terminal = Terminal::new(TestBackend::new(120, 40)).expect("test backend");
-    terminal.draw(|frame| view(&model, Theme::PLAIN, frame)).expect("drawn");
+    terminal
+        .draw(|frame| view(&model, Theme::PLAIN, frame))
+        .expect("drawn");
     for cell in &terminal.backend().buffer().content {
         assert_eq!((cell.fg, cell.bg), (Color::Reset, Color::Reset));
     }
@@ -186,11 +201,19 @@ fn landing_on_the_crossover_and_the_cheapest() {
     press(&mut model, KeyCode::Char('x'));
     let crossover = model.results.answer.landmarks.crossovers[0];
     assert!((altitude(&model) - model.case.altitude_km(crossover.radius_km)).abs() < 1e-6);
-    let (direct, dip) = (model.results.answer.plan(Way::Direct), model.results.answer.plan(Way::Dip));
+    let (direct, dip) = (
+        model.results.answer.plan(Way::Direct),
+        model.results.answer.plan(Way::Dip),
+    );
     let difference = direct.expect("flyable").cost_km_s - dip.expect("flyable").cost_km_s;
     assert!(difference.abs() < 1e-12, "{difference:e}");
     press(&mut model, KeyCode::Char('z'));
-    let cheapest = model.results.answer.landmarks.cheapest.expect("a cheapest altitude");
+    let cheapest = model
+        .results
+        .answer
+        .landmarks
+        .cheapest
+        .expect("a cheapest altitude");
     assert!((altitude(&model) - model.case.altitude_km(cheapest.radius_km)).abs() < 1e-6);
 }
 
@@ -205,7 +228,10 @@ fn typed_values_take_units_and_refusals_change_nothing() {
     assert_eq!(altitude(&model), 9000.0);
     let (_, message) = model.message.clone().expect("a refusal");
     assert!(message.contains("at least 0 and at most"), "{message}");
-    assert!(matches!(&model.overlay, Some(Overlay::Entry { text, .. }) if text == "-5"), "what was typed stays");
+    assert!(
+        matches!(&model.overlay, Some(Overlay::Entry { text, .. }) if text == "-5"),
+        "what was typed stays"
+    );
     press(&mut model, KeyCode::Esc);
     assert_eq!(model.overlay, None);
 }
@@ -213,14 +239,20 @@ fn typed_values_take_units_and_refusals_change_nothing() {
 #[test]
 fn leaving_asks_once_when_something_is_unsaved() {
     let mut model = model((80, 24));
-    assert!(matches!(press(&mut model, KeyCode::Char('q'))[..], [Effect::Quit]));
+    assert!(matches!(
+        press(&mut model, KeyCode::Char('q'))[..],
+        [Effect::Quit]
+    ));
     press(&mut model, KeyCode::Right);
     assert!(press(&mut model, KeyCode::Char('q')).is_empty());
     assert_eq!(model.overlay, Some(Overlay::Ask(Question::Quit)));
     assert!(press(&mut model, KeyCode::Char('n')).is_empty());
     assert_eq!(model.overlay, None);
     press(&mut model, KeyCode::Char('q'));
-    assert!(matches!(press(&mut model, KeyCode::Char('y'))[..], [Effect::Quit]));
+    assert!(matches!(
+        press(&mut model, KeyCode::Char('y'))[..],
+        [Effect::Quit]
+    ));
 }
 
 #[test]
@@ -248,10 +280,28 @@ impl Walk {
 #[test]
 fn random_keys_and_sizes_leave_a_sound_state() {
     let named = [
-        KeyCode::Left, KeyCode::Right, KeyCode::Up, KeyCode::Down, KeyCode::Enter, KeyCode::Esc, KeyCode::Tab, KeyCode::BackTab,
-        KeyCode::PageUp, KeyCode::PageDown, KeyCode::Backspace, KeyCode::Home, KeyCode::F(1), KeyCode::Delete,
+        KeyCode::Left,
+        KeyCode::Right,
+        KeyCode::Up,
+        KeyCode::Down,
+        KeyCode::Enter,
+        KeyCode::Esc,
+        KeyCode::Tab,
+        KeyCode::BackTab,
+        KeyCode::PageUp,
+        KeyCode::PageDown,
+        KeyCode::Backspace,
+        KeyCode::Home,
+        KeyCode::F(1),
+        KeyCode::Delete,
     ];
-    let modifiers = [KeyModifiers::NONE, KeyModifiers::NONE, KeyModifiers::SHIFT, KeyModifiers::ALT, KeyModifiers::CONTROL];
+    let modifiers = [
+        KeyModifiers::NONE,
+        KeyModifiers::NONE,
+        KeyModifiers::SHIFT,
+        KeyModifiers::ALT,
+        KeyModifiers::CONTROL,
+    ];
     let mut walk = Walk(0x5eed_0000_0000_0001);
     let mut model = model((80, 24));
     for step in 0..3000 {
@@ -261,9 +311,15 @@ fn random_keys_and_sizes_leave_a_sound_state() {
             KeyCode::Char(char::from(32 + walk.next(95) as u8))
         };
         let effects = if walk.next(40) == 0 {
-            update(&mut model, Msg::Resize(1 + walk.next(200) as u16, 1 + walk.next(60) as u16))
+            update(
+                &mut model,
+                Msg::Resize(1 + walk.next(200) as u16, 1 + walk.next(60) as u16),
+            )
         } else {
-            update(&mut model, Msg::Key(KeyEvent::new(code, modifiers[walk.next(modifiers.len())])))
+            update(
+                &mut model,
+                Msg::Key(KeyEvent::new(code, modifiers[walk.next(modifiers.len())])),
+            )
         };
         // Nothing is carried out here; a save that is asked for simply never comes back.
         drop(effects);
@@ -271,7 +327,14 @@ fn random_keys_and_sizes_leave_a_sound_state() {
             let _ = draw(&model);
         }
         assert!(model.selected().offered(&model.case), "step {step}");
-        assert!(stoop::study::Case::new(model.case.spec().clone()).is_ok(), "step {step}");
-        assert!(model.results.sentence.is_ascii() && !model.results.sentence.contains("NaN"), "step {step}: {}", model.results.sentence);
+        assert!(
+            stoop::study::Case::new(model.case.spec().clone()).is_ok(),
+            "step {step}"
+        );
+        assert!(
+            model.results.sentence.is_ascii() && !model.results.sentence.contains("NaN"),
+            "step {step}: {}",
+            model.results.sentence
+        );
     }
 }

@@ -25,7 +25,11 @@ fn sources(below: &str) -> Vec<(String, String)> {
     paths
         .into_iter()
         .map(|path| {
-            let name = path.strip_prefix(root()).expect("below the crate").display().to_string();
+            let name = path
+                .strip_prefix(root())
+                .expect("below the crate")
+                .display()
+                .to_string();
             (name, fs::read_to_string(&path).expect("readable source"))
         })
         .collect()
@@ -34,13 +38,20 @@ fn sources(below: &str) -> Vec<(String, String)> {
 /// A source without its comments and its test module, roughly: enough for looking at names.
 fn code(text: &str) -> String {
     let body = text.split("#[cfg(test)]\nmod tests").next().unwrap_or("");
-    body.lines().filter(|line| !line.trim_start().starts_with("//")).collect::<Vec<_>>().join("\n")
+    body.lines()
+        .filter(|line| !line.trim_start().starts_with("//"))
+        .collect::<Vec<_>>()
+        .join("\n")
 }
 
 /// The layer a source belongs to, by its path: `src/study/knob.rs` and `src/study.rs` are `study`.
 fn layer(name: &str) -> String {
     let rest = name.trim_start_matches("src/");
-    rest.split('/').next().unwrap_or("").trim_end_matches(".rs").to_owned()
+    rest.split('/')
+        .next()
+        .unwrap_or("")
+        .trim_end_matches(".rs")
+        .to_owned()
 }
 
 #[test]
@@ -52,21 +63,48 @@ fn every_layer_uses_only_what_stands_to_its_left() {
         ("arrival", &["numerics", "physics"]),
         // Messages about a name echo it, so the sanitiser is below everything that speaks.
         ("study", &["numerics", "physics", "arrival", "visible"]),
-        ("scenario", &["numerics", "physics", "arrival", "study", "visible"]),
-        ("report", &["numerics", "physics", "arrival", "study", "scenario", "visible"]),
-        ("cli", &["numerics", "physics", "arrival", "study", "scenario", "report", "visible"]),
-        ("tui", &["numerics", "physics", "arrival", "study", "scenario", "report", "visible"]),
+        (
+            "scenario",
+            &["numerics", "physics", "arrival", "study", "visible"],
+        ),
+        (
+            "report",
+            &[
+                "numerics", "physics", "arrival", "study", "scenario", "visible",
+            ],
+        ),
+        (
+            "cli",
+            &[
+                "numerics", "physics", "arrival", "study", "scenario", "report", "visible",
+            ],
+        ),
+        (
+            "tui",
+            &[
+                "numerics", "physics", "arrival", "study", "scenario", "report", "visible",
+            ],
+        ),
     ];
     let layers: Vec<&str> = allowed.iter().map(|(layer, _)| *layer).collect();
     for (name, text) in sources("src") {
         let own = layer(&name);
         let Some((_, below)) = allowed.iter().find(|(layer, _)| *layer == own) else {
-            assert!(["lib", "main"].contains(&own.as_str()), "{name}: a layer that the rule does not know");
+            assert!(
+                ["lib", "main"].contains(&own.as_str()),
+                "{name}: a layer that the rule does not know"
+            );
             continue;
         };
         let code = code(&text);
-        for other in layers.iter().filter(|other| **other != own && !below.contains(other)) {
-            assert!(!code.contains(&format!("crate::{other}")), "{name} uses {other}, which stands to its right");
+        for other in layers
+            .iter()
+            .filter(|other| **other != own && !below.contains(other))
+        {
+            assert!(
+                !code.contains(&format!("crate::{other}")),
+                "{name} uses {other}, which stands to its right"
+            );
         }
     }
 }
@@ -78,7 +116,17 @@ fn the_engine_is_pure() {
             continue;
         }
         let code = code(&text);
-        for word in ["ratatui", "crossterm", "serde", "ron::", "std::io", "std::fs", "std::env", "std::time", "std::thread"] {
+        for word in [
+            "ratatui",
+            "crossterm",
+            "serde",
+            "ron::",
+            "std::io",
+            "std::fs",
+            "std::env",
+            "std::time",
+            "std::thread",
+        ] {
             assert!(!code.contains(word), "{name} names {word}");
         }
     }
@@ -86,32 +134,64 @@ fn the_engine_is_pure() {
 
 #[test]
 fn nothing_is_left_lying_about() {
-    let words = ["to", "fix"].map(|start| start.to_owned() + if start == "to" { "do!" } else { "me" });
+    let words =
+        ["to", "fix"].map(|start| start.to_owned() + if start == "to" { "do!" } else { "me" });
     for (name, text) in sources("src").into_iter().chain(sources("tests")) {
-        for word in words.iter().map(String::as_str).chain(["unimplemented!(", "dbg!("]) {
+        for word in words
+            .iter()
+            .map(String::as_str)
+            .chain(["unimplemented!(", "dbg!("])
+        {
             let own = name.ends_with("tidy.rs");
-            assert!(own || !text.to_lowercase().contains(word), "{name} has {word}");
+            assert!(
+                own || !text.to_lowercase().contains(word),
+                "{name} has {word}"
+            );
         }
-        assert!(name.ends_with("tidy.rs") || !text.contains(&format!("#[{}", "ignore")), "{name} ignores a test");
+        assert!(
+            name.ends_with("tidy.rs") || !text.contains(&format!("#[{}", "ignore")),
+            "{name} ignores a test"
+        );
     }
 }
 
 #[test]
 fn every_source_says_what_it_is_for() {
     for (name, text) in sources("src") {
-        assert!(text.starts_with("//!"), "{name} does not start with a sentence about itself");
+        assert!(
+            text.starts_with("//!"),
+            "{name} does not start with a sentence about itself"
+        );
     }
 }
 
 #[test]
 fn the_top_level_holds_what_it_should() {
     let allowed = [
-        "Cargo.toml", "Cargo.lock", "README.md", "DEVELOPERS.md", "LICENSE", ".gitignore", ".git", ".ci", "src", "tests",
-        "scenarios", "docs", "target",
+        "Cargo.toml",
+        "Cargo.lock",
+        "README.md",
+        "DEVELOPERS.md",
+        "LICENSE",
+        ".gitignore",
+        ".git",
+        ".ci",
+        "src",
+        "tests",
+        "scenarios",
+        "docs",
+        "target",
     ];
     for entry in fs::read_dir(root()).expect("crate folder") {
-        let name = entry.expect("entry").file_name().to_string_lossy().into_owned();
-        assert!(allowed.contains(&name.as_str()), "{name} does not belong at the top");
+        let name = entry
+            .expect("entry")
+            .file_name()
+            .to_string_lossy()
+            .into_owned();
+        assert!(
+            allowed.contains(&name.as_str()),
+            "{name} does not belong at the top"
+        );
     }
 }
 
@@ -127,7 +207,11 @@ fn in_step(path: &str, expected: &str) {
         fs::write(&path, expected).expect("document written");
     }
     let found = fs::read_to_string(&path).unwrap_or_default();
-    assert!(found == expected, "{} is not in step; run UPDATE_DOCS=1 cargo test", path.display());
+    assert!(
+        found == expected,
+        "{} is not in step; run UPDATE_DOCS=1 cargo test",
+        path.display()
+    );
 }
 
 #[test]
@@ -144,8 +228,15 @@ fn the_readme_states_commands_cautions_and_links_that_exist() {
     ] {
         assert!(readme.contains(needed), "README lacks: {needed}");
     }
-    for link in readme.split("](").skip(1).filter_map(|rest| rest.split(')').next()) {
-        assert!(link.starts_with("http") || root().join(link).exists(), "README links to {link}, which is not there");
+    for link in readme
+        .split("](")
+        .skip(1)
+        .filter_map(|rest| rest.split(')').next())
+    {
+        assert!(
+            link.starts_with("http") || root().join(link).exists(),
+            "README links to {link}, which is not there"
+        );
     }
 }
 
@@ -153,6 +244,10 @@ fn the_readme_states_commands_cautions_and_links_that_exist() {
 fn documents_name_every_way_and_every_warning() {
     let model = fs::read_to_string(root().join("docs/model.md")).expect("docs/model.md");
     for entry in stoop::arrival::Way::TABLE {
-        assert!(model.contains(&format!("| {} |", entry.name)), "docs/model.md lacks {}", entry.name);
+        assert!(
+            model.contains(&format!("| {} |", entry.name)),
+            "docs/model.md lacks {}",
+            entry.name
+        );
     }
 }

@@ -1,0 +1,1 @@
+//! Placeholder while the module is being written.
