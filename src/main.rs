@@ -5,7 +5,7 @@ use std::io::{IsTerminal, Write};
 use std::path::Path;
 use std::process::ExitCode;
 use stoop::cli::{self, Cli};
-use stoop::scenario::file;
+use stoop::scenario::file::{self, LoadError};
 use stoop::tui::{self, theme::Theme};
 
 fn main() -> ExitCode {
@@ -13,8 +13,11 @@ fn main() -> ExitCode {
         Ok(code) => ExitCode::from(code),
         Err(error) if is_closed_pipe(&error) => ExitCode::SUCCESS,
         Err(error) => {
-            // Nothing can be said if standard error is closed too.
-            let _ = writeln!(std::io::stderr(), "stoop: {error:#}");
+            // Faults of a file begin with their place, as editors and other programs expect it. Nothing can be said if
+            // standard error is closed too.
+            let faults = matches!(error.downcast_ref(), Some(LoadError::Faulty(_)));
+            let name = if faults { "" } else { "stoop: " };
+            let _ = writeln!(std::io::stderr(), "{name}{error:#}");
             ExitCode::from(2)
         }
     }

@@ -98,45 +98,47 @@ const BRAKE_NODES: usize = 6;
 
 /// The highest loop apoapsis that cap and time allow with brake radius q; the target's apoapsis if none.
 ///
-/// Time grows strictly with Q, so the border is one root. Burn times (half of them count) depend on Q too: where a
-/// vehicle is given, the allowance is taken from the plan itself.
+/// Time grows strictly with Q, so without a vehicle the border is one root of the coasts. With one, half of the burns' time counts
+/// too; that changes so little with Q that taking it from the last border and solving again settles in a few rounds.
 fn highest_apoapsis(setting: &Setting, q: f64) -> f64 {
     let (lowest, cap) = (setting.target.apoapsis_km, setting.limits.cap_radius_km);
-    let over = |apoapsis: f64| {
-        let coast = coast_s(setting, q, apoapsis);
-        if setting.limits.longest_s < coast || setting.vehicle.is_none() {
-            return coast - setting.limits.longest_s;
+    let border = |allowed: f64| {
+        if coast_s(setting, q, cap) <= allowed {
+            return cap;
         }
-        // The plan without limits, for its duration only.
-        let mut free = *setting;
-        free.limits.longest_s = f64::INFINITY;
-        free.limits.longest_burn_s = f64::INFINITY;
-        free.limits.most_starts = usize::MAX;
-        free.vehicle = free.vehicle.map(|mut vehicle| {
-            // Enough propellant never to be short; the start mass stays.
-            let total = vehicle.start_mass_kg();
-            vehicle.dry_mass_kg = 0.0;
-            vehicle.propellant_kg = total;
-            vehicle
-        });
-        free.policy.residual = 0.0;
-        free.policy.margin = 0.0;
-        at(&free, q, apoapsis)
-            .and_then(|path| path.figures(&free))
-            .map_or(coast, |figures| figures.duration_s)
-            - setting.limits.longest_s
+        if allowed <= coast_s(setting, q, lowest) {
+            return lowest;
+        }
+        root::bracketed(|x| Some(coast_s(setting, q, x) - allowed), lowest, cap).unwrap_or(lowest)
     };
-    if over(cap) <= 0.0 {
-        return cap;
+    let limit = setting.limits.longest_s;
+    let Some(vehicle) = setting.vehicle.filter(|_| limit.is_finite()) else {
+        return inside(border(limit), cap, lowest);
+    };
+    let burning = |apoapsis: f64| {
+        let start = vehicle.start_mass_kg();
+        bare(setting, q, apoapsis).map_or(0.0, |dv| {
+            vehicle.burn_time_s(vehicle.propellant_for_kg(start, dv))
+        })
+    };
+    let mut found = border(limit);
+    for _ in 0..8 {
+        let next = border(limit - 0.5 * burning(found));
+        let settled = (next - found).abs() <= 1e-13 * found;
+        found = next;
+        if settled {
+            break;
+        }
     }
-    if 0.0 <= over(lowest) {
-        return lowest;
-    }
-    match root::bracketed(|x| Some(over(x)), lowest, cap) {
-        // The root may lie a rounding error on the far side of the limit; step inside.
-        Ok(found) if over(found) <= 0.0 => found,
-        Ok(found) => found * (1.0 - 1e-13),
-        Err(_) => lowest,
+    inside(found, cap, lowest)
+}
+
+/// A border found by a root may lie a rounding error on the far side of the limit; this steps inside.
+fn inside(found: f64, cap: f64, lowest: f64) -> f64 {
+    if found == cap || found == lowest {
+        found
+    } else {
+        found * (1.0 - 1e-12)
     }
 }
 

@@ -31,6 +31,9 @@ pub struct Setting {
     pub vehicle: Option<Vehicle>,
     /// Margins and fixed costs.
     pub policy: Policy,
+    /// v∞² already found for one periapsis radius (km, km²/s²): a curve asks for the same brake radius hundreds of times,
+    /// and a patched conic takes its time. Filled by [`Setting::remembering_brake`]; `None` is always right.
+    pub remembered: Option<(f64, f64)>,
 }
 
 /// A radius that is given, or left to the program.
@@ -104,7 +107,10 @@ impl Setting {
     /// The hyperbola with periapsis q (km) and the turn it leaves to the burns.
     #[inline]
     pub fn arriving(&self, q: f64) -> Result<Arriving, NoPassage> {
-        let v_inf_sq = self.approach.v_inf_sq(q).map_err(NoPassage::Approach)?;
+        let v_inf_sq = match self.remembered {
+            Some((radius, v_inf_sq)) if radius == q => v_inf_sq,
+            _ => self.approach.v_inf_sq(q).map_err(NoPassage::Approach)?,
+        };
         let turn = match self.plane {
             PlaneDemand::Free => 0.0,
             PlaneDemand::Turn(turn) => turn,
@@ -123,6 +129,15 @@ impl Setting {
             }
         };
         Ok(Arriving { v_inf_sq, turn })
+    }
+
+    /// The same setting with v∞² at a fixed brake radius found beforehand.
+    #[must_use]
+    pub fn remembering_brake(mut self) -> Self {
+        if let (Choice::Radius(q), Approach::FromParent(_)) = (self.brake, &self.approach) {
+            self.remembered = self.approach.v_inf_sq(q).ok().map(|v_inf_sq| (q, v_inf_sq));
+        }
+        self
     }
 
     /// The same setting with another target.

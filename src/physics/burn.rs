@@ -42,6 +42,14 @@ impl SpeedStep {
     fn faster(&self) -> f64 {
         self.before.max(self.after)
     }
+
+    /// Cosine of the far-branch angle at the multiplier λ: (λ² − √((u² − λ²)(w² − λ²)))/(uw).
+    #[inline]
+    fn cos_far_angle_at(&self, lambda: f64) -> f64 {
+        let square = |speed: f64| ((speed - lambda) * (speed + lambda)).max(0.0);
+        let root = (square(self.before) * square(self.after)).sqrt();
+        (lambda * lambda - root) / (self.before * self.after)
+    }
 }
 
 /// Share of a braking burn's own Δv after which the spacecraft is captured (energy below zero).
@@ -109,9 +117,11 @@ pub fn split_turn<const N: usize>(steps: &[SpeedStep; N], total: f64) -> [f64; N
         limit,
         far: weakest,
     };
-    let quarter = path.angles(1.0, 0.0);
-    let sum_quarter: f64 = quarter.iter().sum();
-    if total <= sum_quarter {
+    let cos_total = total.cos();
+    // At λ = L the weakest burn turns by acos(slower/faster); the others add to that.
+    let fastest = steps[weakest].faster();
+    let near_side = limit / fastest <= cos_total || total <= path.sum_at_limit();
+    if near_side {
         // For small turns every angle is λ|u − w|/(uw); that guess saves Newton most of its steps.
         let compliance: f64 = steps
             .iter()
@@ -119,17 +129,13 @@ pub fn split_turn<const N: usize>(steps: &[SpeedStep; N], total: f64) -> [f64; N
             .sum();
         let guess = (total / (compliance * limit)).min(0.95).asin();
         path.refine(total, (0.0, FRAC_PI_2), guess, &mut best);
-        // On the far side this burn alone turns by more than its angle at λ = L. If that already costs
-        // more than what was found, the far side is out.
-        let far_floor: f64 = (0..N)
-            .map(|j| {
-                if j == weakest {
-                    steps[j].dv_km_s(quarter[j])
-                } else {
-                    steps[j].difference.abs()
-                }
-            })
+        // On the far side the weakest burn alone turns by more than at λ = L, where it costs √(faster² − slower²), and
+        // the others cost at least their speed differences. If that is more than what was found, the far side is out.
+        let others: f64 = (0..N)
+            .filter(|&j| j != weakest)
+            .map(|j| steps[j].difference.abs())
             .sum();
+        let far_floor = others + ((fastest - limit) * (fastest + limit)).max(0.0).sqrt();
         if far_floor < best.cost {
             path.search(total, FRAC_PI_2, PI, &mut best);
         }
@@ -137,20 +143,22 @@ pub fn split_turn<const N: usize>(steps: &[SpeedStep; N], total: f64) -> [f64; N
         path.search(total, FRAC_PI_2, PI, &mut best);
     }
     for j in (0..N).filter(|&j| j != weakest) {
-        let other = Path {
-            steps,
-            limit,
-            far: j,
-        };
-        // The far angle falls as λ rises, so at λ = L it is smallest; compare it with the total.
-        if other.angles(1.0, -0.0)[j] < total {
-            other.search(total, FRAC_PI_2, PI, &mut best);
+        // The far angle falls as λ rises, so at λ = L it is smallest; if that is more than the total, it is out.
+        if cos_total < steps[j].cos_far_angle_at(limit) {
+            Path {
+                steps,
+                limit,
+                far: j,
+            }
+            .search(total, FRAC_PI_2, PI, &mut best);
         }
     }
-    // The last rounding error goes where the turn is cheapest, so that the angles sum to the total exactly.
+    // What the iteration left over goes to the largest angle, so that the angles sum to the total. Every burn that turns has
+    // the same slope, so that costs no more than it must; a burn at its kink (u = w, no turn) would pay more.
     angles = best.angles;
-    let rest: f64 = (0..N).filter(|&j| j != weakest).map(|j| angles[j]).sum();
-    angles[weakest] = (total - rest).max(0.0);
+    let largest = (1..N).fold(0, |k, j| if angles[k] < angles[j] { j } else { k });
+    let rest: f64 = (0..N).filter(|&j| j != largest).map(|j| angles[j]).sum();
+    angles[largest] = (total - rest).max(0.0);
     angles
 }
 
@@ -167,6 +175,11 @@ struct Path<'a, const N: usize> {
 }
 
 impl<const N: usize> Path<'_, N> {
+    /// Sum of the angles at λ = L.
+    fn sum_at_limit(&self) -> f64 {
+        self.angles(1.0, 0.0).iter().sum()
+    }
+
     /// The angles at sin φ, cos φ. A negative (or negative zero) cosine means the far half.
     #[inline]
     fn angles(&self, sine: f64, cosine: f64) -> [f64; N] {

@@ -90,6 +90,10 @@ pub struct ParentTransfer {
     jacobi_part: f64,
     /// Angular momentum at the body (signed, km²/s) that entries on the outbound leg span.
     momentum_span: (f64, f64),
+    /// First and last angle of entry on the outbound leg, rad.
+    entry_span: (f64, f64),
+    /// Angle of entry at which the momentum is least, rad: from the first angle to here it falls.
+    least_angle: f64,
 }
 
 /// One entry through the sphere of influence.
@@ -122,6 +126,12 @@ pub struct Patch {
 /// rise or fall), so 90 nodes of 4° bracket every solution that the tests know.
 const ENTRY_NODES: u32 = 90;
 
+/// Nodes of the search for one passage inside the region of entries, where the momentum rises or falls at most once each.
+const PATCH_NODES: u32 = 16;
+
+/// By how much that region is widened on either side, rad.
+const ENTRY_MARGIN: f64 = 0.06;
+
 impl ParentTransfer {
     /// Prepares a transfer: sphere of influence, constants of the models, and the span of reachable passages.
     ///
@@ -152,6 +162,8 @@ impl ParentTransfer {
             rate,
             jacobi_part,
             momentum_span: (0.0, 0.0),
+            entry_span: (-PI, PI),
+            least_angle: PI,
         };
         transfer.fixed_v_inf_sq = match input.model {
             Model::Textbook => transfer.crossing_speed_sq(parent_gm).unwrap_or(0.0),
@@ -160,7 +172,7 @@ impl ParentTransfer {
                     - 2.0 * body_gm / transfer.sphere_km
             }
             Model::Patched | Model::ThreeBody => {
-                transfer.momentum_span = transfer.span();
+                transfer.take_spans();
                 0.0
             }
         };
@@ -267,8 +279,8 @@ impl ParentTransfer {
         let moon_speed = ((parent_gm + body_gm) / a).sqrt();
         let sin_i_sq = 1.0 - self.input.cos_inclination * self.input.cos_inclination;
         let (sine, cosine) = lambda.sin_cos();
-        let mut cos_beta = 1.0_f64;
-        for _ in 0..50 {
+        let (mut cos_beta, mut before) = (1.0_f64, f64::NAN);
+        for round in 0..50 {
             let (x, y) = (
                 a - self.sphere_km * cos_beta * cosine,
                 self.sphere_km * cos_beta * sine,
@@ -306,7 +318,16 @@ impl ParentTransfer {
                     wanted_momentum: wanted * self.input.cos_inclination,
                 });
             }
-            cos_beta = next;
+            // Aitken's extrapolation of the last three every other round, while their differences are more than rounding.
+            let (first, second) = (cos_beta - before, next - cos_beta);
+            let leap = next - second * second / (second - first);
+            before = cos_beta;
+            let trusted = 1e-11 < second.abs() && (0.0..=1.0).contains(&leap);
+            cos_beta = if round % 2 == 1 && trusted {
+                leap
+            } else {
+                next
+            };
         }
         None
     }
@@ -317,9 +338,26 @@ impl ParentTransfer {
             self.entry(lambda, q)
                 .map(|entry| entry.normal_momentum - entry.wanted_momentum)
         };
-        let node = |k: u32| -PI + 2.0 * PI * f64::from(k) / f64::from(ENTRY_NODES);
+        // From the first entry to the least momentum there is one root for every passage in reach. An inclined passage
+        // shifts the first entry a little, so its neighbourhood is tried.
+        let b = self.least_angle - 1e-9;
+        if let Some(fb) = miss(b) {
+            let starts = [1e-9, 0.02, 0.1].map(|inwards| self.entry_span.0 + inwards);
+            let start = starts
+                .into_iter()
+                .find(|a| miss(*a).is_some_and(|fa| (fa < 0.0) != (fb < 0.0)));
+            if let Some(a) = start {
+                return self.patch_at(q, root::bracketed(miss, a, b).ok()?);
+            }
+        }
+        // The region of entries in the plane, a little wider because an inclined passage shifts it.
+        let (first, last) = (
+            self.entry_span.0 - ENTRY_MARGIN,
+            self.entry_span.1 + ENTRY_MARGIN,
+        );
+        let node = |k: u32| first + (last - first) * f64::from(k) / f64::from(PATCH_NODES);
         let mut before: Option<(f64, f64)> = None;
-        for k in 0..=ENTRY_NODES {
+        for k in 0..=PATCH_NODES {
             let here = miss(node(k)).map(|value| (node(k), value));
             let bracket = match (before, here) {
                 (Some((a, fa)), Some((b, fb))) if (fa < 0.0) != (fb < 0.0) => Some((a, b)),
@@ -339,35 +377,36 @@ impl ParentTransfer {
                 _ => None,
             };
             if let Some((a, b)) = bracket {
-                let lambda = root::bracketed(miss, a, b).ok()?;
-                let entry = self.entry(lambda, q)?;
-                let outer = time_to_radius_ellipse_s(
-                    self.input.parent_gm,
-                    self.input.departure_radius_km,
-                    self.input.apoapsis_km,
-                    entry.crossing_radius,
-                )?;
-                let inner = time_to_radius_hyperbola_s(
-                    self.input.body_gm,
-                    entry.v_inf_sq,
-                    q,
-                    self.sphere_km,
-                )?;
-                return Some(Patch {
-                    entry_angle_rad: lambda,
-                    crossing_radius_km: entry.crossing_radius,
-                    v_inf_sq: entry.v_inf_sq,
-                    outer_time_s: outer,
-                    inner_time_s: inner,
-                });
+                return self.patch_at(q, root::bracketed(miss, a, b).ok()?);
             }
             before = here;
         }
         None
     }
 
-    /// Smallest and largest signed angular momentum at the body over all entries (in the orbital plane).
-    fn span(&self) -> (f64, f64) {
+    /// The solved patch at an entry angle.
+    fn patch_at(&self, q: f64, lambda: f64) -> Option<Patch> {
+        let entry = self.entry(lambda, q)?;
+        let outer_time_s = time_to_radius_ellipse_s(
+            self.input.parent_gm,
+            self.input.departure_radius_km,
+            self.input.apoapsis_km,
+            entry.crossing_radius,
+        )?;
+        let inner_time_s =
+            time_to_radius_hyperbola_s(self.input.body_gm, entry.v_inf_sq, q, self.sphere_km)?;
+        Some(Patch {
+            entry_angle_rad: lambda,
+            crossing_radius_km: entry.crossing_radius,
+            v_inf_sq: entry.v_inf_sq,
+            outer_time_s,
+            inner_time_s,
+        })
+    }
+
+    /// Finds the smallest and largest signed angular momentum at the body over all entries in the orbital plane, and
+    /// the angles that bound them.
+    fn take_spans(&mut self) {
         let planar = Self {
             input: TransferInput {
                 cos_inclination: 1.0,
@@ -377,11 +416,16 @@ impl ParentTransfer {
         };
         let at = |lambda: f64| planar.entry(lambda, 0.0).map(|entry| entry.normal_momentum);
         let node = |k: u32| -PI + 2.0 * PI * f64::from(k) / f64::from(ENTRY_NODES);
-        let mut span: Option<(f64, f64)> = None;
-        let mut take = |value: f64| {
-            span = Some(span.map_or((value, value), |(low, high)| {
-                (low.min(value), high.max(value))
-            }));
+        let mut found: Option<((f64, f64), (f64, f64), f64)> = None;
+        let mut take = |lambda: f64, value: f64| {
+            found = Some(match found {
+                None => ((value, value), (lambda, lambda), lambda),
+                Some(((low, high), (first, last), least)) => (
+                    (low.min(value), high.max(value)),
+                    (first.min(lambda), last.max(lambda)),
+                    if value < low { lambda } else { least },
+                ),
+            });
         };
         let mut before = None;
         for k in 0..=ENTRY_NODES {
@@ -395,13 +439,19 @@ impl ParentTransfer {
                 }
                 _ => None,
             };
-            edge.and_then(at)
+            for (lambda, value) in [edge.map(|edge| (edge, at(edge))), Some((node(k), here))]
                 .into_iter()
-                .chain(here)
-                .for_each(&mut take);
+                .flatten()
+            {
+                if let Some(value) = value {
+                    take(lambda, value);
+                }
+            }
             before = here;
         }
-        span.unwrap_or((0.0, 0.0))
+        if let Some((momenta, angles, least)) = found {
+            (self.momentum_span, self.entry_span, self.least_angle) = (momenta, angles, least);
+        }
     }
 
     /// Whether the patched conic reaches periapsis q with this v∞ on the wanted side.

@@ -104,7 +104,15 @@ fn syntax(text: &str) -> Result<(), Diagnostic> {
             line: error.span.start.line,
             column: error.span.start.col,
             field: String::new(),
-            message: format!("the file is not valid RON here: {}", error.code),
+            message: match error.code {
+                ron::Error::ExceededRecursionLimit => {
+                    format!(
+                        "brackets are nested deeper than the {} levels allowed",
+                        tree::DEEPEST
+                    )
+                }
+                code => format!("the file is not valid RON here: {code}"),
+            },
         })
 }
 

@@ -48,7 +48,7 @@ pub enum LoadError {
         why: String,
     },
     /// The text has faults.
-    #[error("{0}")]
+    #[error(transparent)]
     Faulty(#[from] Diagnostics),
 }
 

@@ -425,7 +425,6 @@ mod tests {
             "(a: 'x",
             "\u{feff}(",
             "(a: 0x)",
-            "r",
             "-",
         ] {
             assert_eq!(parse(text), None, "{text}");

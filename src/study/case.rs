@@ -355,7 +355,9 @@ fn derive(
             per_start_km_s: 1e-3 * spec.policy.per_start_m_s,
             residual: 0.01 * spec.policy.residual_percent,
         },
-    };
+        remembered: None,
+    }
+    .remembering_brake();
     Some((setting, declination_rad, journey))
 }
 

@@ -82,15 +82,10 @@ pub fn at_radius(setting: &Setting, radius_km: f64) -> Setting {
 
 /// Finds the landmarks of a setting.
 pub fn landmarks(setting: &Setting) -> Landmarks {
-    scanned(setting, SCAN_POINTS)
-}
-
-/// The landmarks from a scan of `points` nodes: fewer find the same places faster, but may miss two that lie close.
-pub fn scanned(setting: &Setting, points: usize) -> Landmarks {
     let Some((low, high)) = sensible_range(setting) else {
         return Landmarks::default();
     };
-    let grid = grid(setting, low, high, points.max(2));
+    let grid = grid(setting, low, high);
     let nodes: Vec<Node> = grid
         .iter()
         .map(|&radius| Node::ask(setting, radius))
@@ -102,13 +97,13 @@ pub fn scanned(setting: &Setting, points: usize) -> Landmarks {
 }
 
 /// Log-spaced radii; nodes crowd just above the brake radius, where dip and loop begin and r = q is a trivial tie.
-fn grid(setting: &Setting, low: f64, high: f64, points: usize) -> Vec<f64> {
+fn grid(setting: &Setting, low: f64, high: f64) -> Vec<f64> {
     let span = (high / low).ln();
-    let mut grid: Vec<f64> = (0..points)
-        .map(|k| low * (span * k as f64 / (points - 1) as f64).exp())
+    let mut grid: Vec<f64> = (0..SCAN_POINTS)
+        .map(|k| low * (span * k as f64 / (SCAN_POINTS - 1) as f64).exp())
         .collect();
     grid[0] = low;
-    grid[points - 1] = high;
+    grid[SCAN_POINTS - 1] = high;
     let brake = match setting.brake {
         Choice::Radius(brake) => brake,
         Choice::Best => low,

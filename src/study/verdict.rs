@@ -8,6 +8,7 @@ use super::answer::{Answer, ask, cheapest};
 use super::landmarks::{self, Crossover};
 use crate::arrival::{Choice, NotFlyable, Plan, Reason, Setting, Way};
 use crate::arrival::{PlaneDemand, Policy};
+use crate::numerics::root;
 use crate::physics::conic;
 use crate::physics::transfer::Approach;
 
@@ -277,23 +278,7 @@ fn shift(setting: &Setting, answer: &Answer, nearest: Option<Crossover>, cause: 
     let cost_without = best_without
         .and_then(|best| flyable().find(|(way, _)| *way == best))
         .map(|(_, plan)| plan.cost_km_s);
-    let crossover_without_km = nearest.and_then(|nearest| {
-        // A quarter of the nodes: one crossover is followed, not all of them found.
-        let marks = landmarks::scanned(&other, landmarks::SCAN_POINTS / 4);
-        marks
-            .crossovers
-            .iter()
-            .filter(|crossover| {
-                crossover.below == nearest.below && crossover.above == nearest.above
-            })
-            .min_by(|a, b| {
-                (a.radius_km / nearest.radius_km)
-                    .ln()
-                    .abs()
-                    .total_cmp(&(b.radius_km / nearest.radius_km).ln().abs())
-            })
-            .map(|crossover| crossover.radius_km)
-    });
+    let crossover_without_km = nearest.and_then(|nearest| moved(&other, &nearest));
     let cost_km_s = answer
         .best_plan()
         .zip(cost_without)
@@ -304,4 +289,69 @@ fn shift(setting: &Setting, answer: &Answer, nearest: Option<Crossover>, cause: 
         crossover_without_km,
         best_without,
     }
+}
+
+/// Where the two ways of a crossover cost the same in another setting: the place nearest to where they did, provided that no
+/// third way is cheaper there.
+///
+/// Looks outwards from the known place in growing steps on both sides, which takes a small part of the work of all landmarks.
+fn moved(setting: &Setting, crossover: &Crossover) -> Option<f64> {
+    let (low, high) = landmarks::sensible_range(setting)?;
+    let floor = match setting.brake {
+        Choice::Radius(brake) => low.max(brake * (1.0 + 1e-3)),
+        Choice::Best => low * (1.0 + 1e-3),
+    };
+    if high <= floor {
+        return None;
+    }
+    let gap = |radius: f64| {
+        let here = landmarks::at_radius(setting, radius);
+        let cost = |way: Way| way.figures(&here).ok().map(|figures| figures.cost_km_s);
+        Some(cost(crossover.below)? - cost(crossover.above)?)
+    };
+    let start = crossover.radius_km.clamp(floor, high);
+    let at_start = gap(start)?;
+    // Each side goes on until it meets its end or a gap in a curve.
+    let (mut left, mut right) = (Some((start, at_start)), Some((start, at_start)));
+    let mut factor = 1.01_f64;
+    let found = loop {
+        let step = |side: Option<(f64, f64)>, next: f64| -> Result<Option<(f64, f64)>, f64> {
+            let Some((radius, value)) = side.filter(|(radius, _)| *radius != next) else {
+                return Ok(None);
+            };
+            let Some(there) = gap(next) else {
+                return Ok(None);
+            };
+            if (there < 0.0) != (value < 0.0) {
+                return root::bracketed(gap, radius, next).map_or(Ok(None), Err);
+            }
+            Ok(Some((next, there)))
+        };
+        match step(
+            left,
+            left.map_or(floor, |(radius, _)| (radius / factor).max(floor)),
+        ) {
+            Ok(next) => left = next,
+            Err(found) => break found,
+        }
+        match step(
+            right,
+            right.map_or(high, |(radius, _)| (radius * factor).min(high)),
+        ) {
+            Ok(next) => right = next,
+            Err(found) => break found,
+        }
+        if left.is_none() && right.is_none() {
+            return None;
+        }
+        factor = (factor * 1.05).min(1.5);
+    };
+    let here = landmarks::at_radius(setting, found);
+    let cost = |way: Way| way.figures(&here).ok().map(|figures| figures.cost_km_s);
+    let tied = cost(crossover.below)?;
+    let beaten = Way::TABLE
+        .iter()
+        .filter_map(|entry| cost(entry.way))
+        .any(|other| other < tied * (1.0 - 1e-9));
+    (!beaten).then_some(found)
 }

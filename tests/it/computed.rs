@@ -2,10 +2,11 @@
 //!
 //! `tests/data/computed.json` was computed outside this project (mpmath, scipy); it says so itself.
 
+use crate::support::open_setting;
 use serde_json::Value;
-use stoop::arrival::{Choice, Limits, Plan, PlaneDemand, Policy, Setting, Way};
-use stoop::physics::conic::{self, Orbit};
-use stoop::physics::transfer::{Approach, Model, ParentTransfer, TransferInput};
+use stoop::arrival::{Choice, Plan, PlaneDemand, Setting, Way};
+use stoop::physics::conic;
+use stoop::physics::transfer::{Model, ParentTransfer, TransferInput};
 use stoop::study::landmarks;
 
 fn cases(group: &str) -> Vec<Value> {
@@ -46,35 +47,6 @@ fn close(case: &Value, what: &str, found: f64, expected: f64, tolerance: f64) {
         "{} {what}: {found} expected {expected}, {difference:e} > {tolerance:e}",
         case["id"]
     );
-}
-
-/// A setting without limits that bind.
-fn open_setting(gm: f64, v_inf: f64, periapsis_km: f64, apoapsis_km: f64) -> Setting {
-    Setting {
-        gm,
-        body_radius_km: 0.0,
-        approach: Approach::Given(v_inf * v_inf),
-        target: Orbit {
-            periapsis_km,
-            apoapsis_km,
-        },
-        plane: PlaneDemand::Free,
-        brake: Choice::Radius(periapsis_km),
-        loop_apoapsis: Choice::Radius(apoapsis_km),
-        limits: Limits {
-            floor_radius_km: 1e-3,
-            cap_radius_km: 1e12,
-            longest_s: f64::INFINITY,
-            most_starts: 8,
-            longest_burn_s: f64::INFINITY,
-        },
-        vehicle: None,
-        policy: Policy {
-            margin: 0.0,
-            per_start_km_s: 0.0,
-            residual: 0.0,
-        },
-    }
 }
 
 fn planned(case: &Value, way: Way) -> Plan {

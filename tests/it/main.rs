@@ -7,6 +7,7 @@ mod properties;
 mod published;
 mod scenarios;
 mod screens;
+mod support;
 #[cfg(unix)]
 mod terminal;
 mod tidy;

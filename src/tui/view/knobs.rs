@@ -125,7 +125,7 @@ fn exact_altitude(value: f64) -> String {
     let text = format!("{value:.3}");
     let exact = text
         .parse::<f64>()
-        .is_ok_and(|back| (back - value).abs() <= 1e-9 * value.abs());
+        .is_ok_and(|back| (back - value).abs() <= 1e-12 * value.abs());
     if !exact {
         return words::altitude(value).trim_end_matches(" km").to_owned();
     }

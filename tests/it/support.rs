@@ -1,0 +1,45 @@
+//! What several modules need: a setting without limits, and a small random walk with a fixed seed.
+
+use stoop::arrival::{Choice, Limits, PlaneDemand, Policy, Setting};
+use stoop::physics::conic::Orbit;
+use stoop::physics::transfer::Approach;
+
+/// A setting without limits that bind.
+pub(crate) fn open_setting(gm: f64, v_inf: f64, periapsis_km: f64, apoapsis_km: f64) -> Setting {
+    Setting {
+        gm,
+        body_radius_km: 0.0,
+        approach: Approach::Given(v_inf * v_inf),
+        target: Orbit {
+            periapsis_km,
+            apoapsis_km,
+        },
+        plane: PlaneDemand::Free,
+        brake: Choice::Radius(periapsis_km),
+        loop_apoapsis: Choice::Radius(apoapsis_km),
+        limits: Limits {
+            floor_radius_km: 1e-3,
+            cap_radius_km: 1e12,
+            longest_s: f64::INFINITY,
+            most_starts: 8,
+            longest_burn_s: f64::INFINITY,
+        },
+        vehicle: None,
+        policy: Policy {
+            margin: 0.0,
+            per_start_km_s: 0.0,
+            residual: 0.0,
+        },
+        remembered: None,
+    }
+}
+
+/// Asserts that two numbers agree to a relative tolerance.
+#[track_caller]
+pub(crate) fn agree(found: f64, expected: f64, tolerance: f64) {
+    let difference = (found - expected).abs() / expected.abs().max(f64::MIN_POSITIVE);
+    assert!(
+        difference <= tolerance,
+        "{found} expected {expected}: {difference:e} > {tolerance:e}"
+    );
+}
