@@ -7,5 +7,6 @@
 pub mod decode;
 pub mod diagnostic;
 pub mod file;
+pub mod reference;
 pub mod tree;
 pub mod write;

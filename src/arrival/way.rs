@@ -311,28 +311,28 @@ impl Reason {
 #[derive(Clone, Debug, PartialEq)]
 pub struct NotFlyable {
     /// At least one reason.
-    pub reasons: ArrayVec<Reason, 6>,
+    pub reasons: Vec<Reason>,
 }
 
 impl NotFlyable {
     pub(super) fn because(reason: Reason) -> Self {
-        let mut reasons = ArrayVec::new();
-        reasons.push(reason);
-        Self { reasons }
+        Self {
+            reasons: vec![reason],
+        }
     }
 }
 
-/// Collects reasons while a way is looked at.
+/// Collects reasons while a way is looked at. Empty it costs nothing, and nearly always it is.
 #[derive(Default)]
-pub(super) struct Objections(ArrayVec<Reason, 6>);
+pub(super) struct Objections(Vec<Reason>);
 
 impl Objections {
     pub(super) fn add(&mut self, reason: Reason) {
-        // More than six reasons help nobody; the first six stand.
-        let _ = self.0.try_push(reason);
+        self.0.push(reason);
     }
 
     /// Reasons that hold for every way: the target itself is not allowed.
+    #[inline]
     pub(super) fn about_target(setting: &Setting) -> Self {
         let mut objections = Self::default();
         let (target, limits) = (&setting.target, &setting.limits);
@@ -352,6 +352,7 @@ impl Objections {
     }
 
     /// Reasons about the radius at which dip and loop brake.
+    #[inline]
     pub(super) fn about_brake(&mut self, setting: &Setting, brake: f64) {
         if brake < setting.limits.floor_radius_km {
             self.add(Reason::BrakeUnderFloor {
@@ -367,6 +368,7 @@ impl Objections {
         }
     }
 
+    #[inline]
     pub(super) fn none(self) -> Result<(), NotFlyable> {
         if self.0.is_empty() {
             Ok(())

@@ -57,6 +57,6 @@ pub(super) fn find(name: &str) -> Result<&'static Knob> {
             return anyhow!("{name} belongs to dated arrivals, which are not available in this version; use an Asymptote arrival and v-inf");
         }
         let near = nearest(name, KNOBS.iter().map(|knob| knob.name));
-        anyhow!("there is no knob \"{}\"{near}; `stoop knobs` lists them", ascii(name))
+        anyhow!("there is no knob \"{}\"; `stoop knobs` lists them{near}", ascii(name))
     })
 }

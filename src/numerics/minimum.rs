@@ -186,6 +186,6 @@ mod tests {
         let found = scan_then_refine(f, &[1.0, 1.9, 3.0]).expect("exists");
         let sharp = stationary_point(f, found.x).expect("smooth");
         assert!((sharp - 2.0).abs() <= 4e-12, "{sharp}");
-        assert_eq!(stationary_point(|x| Some(x), 2.0), None);
+        assert_eq!(stationary_point(Some, 2.0), None);
     }
 }

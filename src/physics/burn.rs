@@ -59,7 +59,7 @@ impl SpeedStep {
 /// cancellation. Without a turn this is (u − v_esc)/(u − w). Takes v∞² (km²/s²).
 #[inline]
 pub fn captured_share(step: SpeedStep, turn: f64, v_inf_sq: f64) -> Option<f64> {
-    let half_sine = (0.5 * turn).sin();
+    let half_sine = if turn == 0.0 { 0.0 } else { (0.5 * turn).sin() };
     let toward = step.before * (step.difference + 2.0 * step.after * half_sine * half_sine);
     let dv_sq = step.dv_for_half_sine(half_sine).powi(2);
     let root = toward * toward - dv_sq * v_inf_sq;

@@ -208,7 +208,8 @@ impl ParentTransfer {
             }
             Model::ThreeBody => {
                 let v_inf_sq = self.three_body_v_inf_sq(q);
-                if !(0.0 < v_inf_sq) {
+                // NaN where the integral forbids the passage.
+                if v_inf_sq.is_nan() || v_inf_sq <= 0.0 {
                     return Err(NoArrival::NotHyperbolic);
                 }
                 self.reach(q, v_inf_sq)?;
@@ -416,7 +417,8 @@ impl ParentTransfer {
         };
         let at = |lambda: f64| planar.entry(lambda, 0.0).map(|entry| entry.normal_momentum);
         let node = |k: u32| -PI + 2.0 * PI * f64::from(k) / f64::from(ENTRY_NODES);
-        let mut found: Option<((f64, f64), (f64, f64), f64)> = None;
+        type Spans = ((f64, f64), (f64, f64), f64);
+        let mut found: Option<Spans> = None;
         let mut take = |lambda: f64, value: f64| {
             found = Some(match found {
                 None => ((value, value), (lambda, lambda), lambda),

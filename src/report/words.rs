@@ -615,7 +615,7 @@ mod tests {
         assert_eq!(dv(0.000_124), "0.12 m/s");
         assert_eq!(dv(17.2), "17 200 m/s");
         assert_eq!(time(1260.0), "21 min");
-        assert_eq!(time(86_400.0 * 3.14), "3.1 d");
+        assert_eq!(time(86_400.0 * 3.06), "3.1 d");
     }
 
     #[test]

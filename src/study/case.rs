@@ -258,7 +258,7 @@ fn resolve_body(spec: &BodySpec, faults: &mut Vec<Fault>) -> Option<Body> {
                 let near = nearest(name, catalogue::names());
                 faults.push(fault(
                     "body",
-                    format!("\"{name}\" is not in the catalogue{near}; `stoop bodies` lists it, `Custom(…)` takes a body of your own"),
+                    format!("\"{name}\" is not in the catalogue; `stoop bodies` lists it, `Custom(...)` takes a body of your own{near}"),
                 ));
             }
             body
@@ -290,7 +290,7 @@ fn resolve_body(spec: &BodySpec, faults: &mut Vec<Fault>) -> Option<Body> {
     }
 }
 
-/// `, did you mean "Moon"?` for a name close to a known one; empty otherwise.
+/// `; did you mean "Moon"?` for a name close to a known one; empty otherwise.
 pub fn nearest<'a>(name: &str, known: impl Iterator<Item = &'a str>) -> String {
     let lower = name.to_lowercase();
     known
@@ -303,7 +303,7 @@ pub fn nearest<'a>(name: &str, known: impl Iterator<Item = &'a str>) -> String {
         .filter(|(likeness, _)| 0.75 <= *likeness)
         .max_by(|a, b| a.0.total_cmp(&b.0))
         .map_or_else(String::new, |(_, candidate)| {
-            format!(", did you mean \"{candidate}\"?")
+            format!("; did you mean \"{candidate}\"?")
         })
 }
 
@@ -418,7 +418,7 @@ fn limits(spec: &Spec, body: &Body, faults: &mut Vec<Fault>) -> Option<Limits> {
         (Some(CapSpec::HillFraction(_)), None) => {
             faults.push(fault(
                 "limits.cap.HillFraction",
-                "needs a Hill radius, and this body has neither `hill_radius_km` nor a `parent`; give one of them, or `cap: AltitudeKm(…)`",
+                "needs a Hill radius, and this body has neither `hill_radius_km` nor a `parent`; give one of them, or `cap: AltitudeKm(...)`",
             ));
             return None;
         }
@@ -555,7 +555,7 @@ fn transfer_ends<'a>(
         let near = nearest(from, catalogue::names());
         faults.push(fault(
             "arrival.from",
-            format!("\"{from}\" is not in the catalogue{near}; `stoop bodies` lists it"),
+            format!("\"{from}\" is not in the catalogue; `stoop bodies` lists it{near}"),
         ));
         return None;
     };

@@ -203,7 +203,7 @@ pub const FIELDS: &[Field] = &[
         "km2/s2",
         Excluding(0.0),
         Including(40_000.0),
-        "twice the energy of arrival, the square of v-infinity",
+        "square of v-infinity",
         "",
     ),
     field(
@@ -347,7 +347,7 @@ pub const FIELDS: &[Field] = &[
         "",
         Including(1.0),
         Including(8.0),
-        "most burns",
+        "largest number of burns allowed",
         "4",
     ),
     field(

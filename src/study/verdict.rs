@@ -190,14 +190,13 @@ fn causes(setting: &Setting, answer: &Answer) -> Vec<Cause> {
     let at_floor = |plan: &Plan| plan.starts() != 1 && plan.brake_radius_km <= floor * (1.0 + 1e-9);
     match setting.brake {
         Choice::Best
-            if answer
-                .ways
-                .iter()
-                .any(|(_, plan)| plan.as_ref().is_ok_and(at_floor)) =>
+            if setting.body_radius_km < floor
+                && answer
+                    .ways
+                    .iter()
+                    .any(|(_, plan)| plan.as_ref().is_ok_and(at_floor)) =>
         {
-            if setting.body_radius_km < floor {
-                causes.push(Cause::Floor);
-            }
+            causes.push(Cause::Floor);
         }
         Choice::Radius(brake) if floor < brake && brake <= setting.target.periapsis_km => {
             causes.push(Cause::BrakeHeld)

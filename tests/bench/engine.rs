@@ -1,1 +1,167 @@
-fn main() {}
+//! How fast the engine is. `cargo bench`; quote medians, machines are noisy.
+
+use divan::{Bencher, black_box};
+use stoop::arrival::{Choice, Limits, PlaneDemand, Policy, Setting, Way};
+use stoop::physics::conic::Orbit;
+use stoop::physics::transfer::Approach;
+use stoop::report::plot::Glyphs;
+use stoop::scenario::file;
+use stoop::study::curve::{self, Axis};
+use stoop::study::knob::{KnobId, by_id};
+use stoop::study::{Answer, Case, landmarks, verdict};
+use stoop::tui::model::Model;
+use stoop::tui::theme::Theme;
+
+fn main() {
+    divan::main();
+}
+
+/// A lunar arrival with room for every way.
+fn setting(turn_deg: f64) -> Setting {
+    Setting {
+        gm: 4902.8,
+        body_radius_km: 1737.4,
+        approach: Approach::Given(0.85 * 0.85),
+        target: Orbit {
+            periapsis_km: 14_000.0,
+            apoapsis_km: 14_000.0,
+        },
+        plane: if turn_deg == 0.0 {
+            PlaneDemand::Free
+        } else {
+            PlaneDemand::Turn(turn_deg.to_radians())
+        },
+        brake: Choice::Radius(1837.4),
+        loop_apoapsis: Choice::Radius(59_737.4),
+        limits: Limits {
+            floor_radius_km: 1797.4,
+            cap_radius_km: 60_000.0,
+            longest_s: 60.0 * 86_400.0,
+            most_starts: 4,
+            longest_burn_s: f64::INFINITY,
+        },
+        vehicle: None,
+        policy: Policy {
+            margin: 0.05,
+            per_start_km_s: 0.0,
+            residual: 0.02,
+        },
+        remembered: None,
+    }
+}
+
+/// Turns of the plane, deg.
+const TURNS: [f64; 2] = [0.0, 28.5];
+
+mod point {
+    use super::*;
+
+    #[divan::bench(args = TURNS)]
+    fn direct(bencher: Bencher, turn: f64) {
+        let setting = setting(turn);
+        bencher.bench_local(|| Way::Direct.figures(black_box(&setting)));
+    }
+
+    #[divan::bench(args = TURNS)]
+    fn dip(bencher: Bencher, turn: f64) {
+        let setting = setting(turn);
+        bencher.bench_local(|| Way::Dip.figures(black_box(&setting)));
+    }
+
+    #[divan::bench(args = TURNS, name = "loop")]
+    fn looped(bencher: Bencher, turn: f64) {
+        let setting = setting(turn);
+        bencher.bench_local(|| Way::Loop.figures(black_box(&setting)));
+    }
+
+    #[divan::bench(args = TURNS)]
+    fn loop_plan_with_burns(bencher: Bencher, turn: f64) {
+        let setting = setting(turn);
+        bencher.bench_local(|| Way::Loop.plan(black_box(&setting)));
+    }
+
+    #[divan::bench(args = TURNS)]
+    fn loop_best_brake_and_apoapsis(bencher: Bencher, turn: f64) {
+        let setting = Setting {
+            brake: Choice::Best,
+            loop_apoapsis: Choice::Best,
+            ..setting(turn)
+        };
+        bencher.bench_local(|| Way::Loop.figures(black_box(&setting)));
+    }
+}
+
+mod study {
+    use super::*;
+
+    /// 240 target altitudes, all three ways, and all landmarks.
+    fn curve_and_landmarks(case: &Case) -> usize {
+        let axis =
+            Axis::new(by_id(KnobId::TargetAltitude), 100.0, 24_000.0, 240, true).expect("an axis");
+        curve::curve(case, &axis).len() + landmarks::landmarks(case.setting()).crossovers.len()
+    }
+
+    fn case(plane_change_deg: f64, best: bool) -> Case {
+        let choice = |altitude: f64| {
+            if best {
+                "Best".to_owned()
+            } else {
+                format!("AltitudeKm({altitude:?})")
+            }
+        };
+        let text = format!(
+            "(format: 1, body: Known(\"Moon\"), arrival: Asymptote(v_inf_km_s: 0.85), \
+             target: (shape: Circular(altitude_km: 6500.0), plane_change_deg: {plane_change_deg:?}), \
+             braking: (brake: {}, loop_apoapsis: {}))",
+            choice(100.0),
+            choice(24_000.0),
+        );
+        file::parse("bench", &text).expect("sound").case
+    }
+
+    #[divan::bench(args = TURNS)]
+    fn curve_240_and_landmarks(bencher: Bencher, turn: f64) {
+        let case = case(turn, false);
+        bencher.bench_local(|| curve_and_landmarks(black_box(&case)));
+    }
+
+    #[divan::bench(args = TURNS)]
+    fn curve_240_and_landmarks_all_best(bencher: Bencher, turn: f64) {
+        let case = case(turn, true);
+        bencher.bench_local(|| curve_and_landmarks(black_box(&case)));
+    }
+
+    #[divan::bench]
+    fn answer_and_verdict(bencher: Bencher) {
+        let case = file::built_in().case;
+        bencher.bench_local(|| {
+            let answer = Answer::of(black_box(&case));
+            verdict::verdict(case.setting(), &answer)
+        });
+    }
+}
+
+mod screen {
+    use super::*;
+    use crossterm::event::{KeyCode, KeyEvent, KeyModifiers};
+    use ratatui::Terminal;
+    use ratatui::backend::TestBackend;
+    use stoop::tui::update::{Msg, update};
+    use stoop::tui::view::view;
+
+    /// A key press to a finished frame at 200 x 60.
+    #[divan::bench]
+    fn key_to_frame(bencher: Bencher) {
+        let mut model = Model::new(file::built_in(), None, (200, 60), Glyphs::Ascii);
+        let mut terminal = Terminal::new(TestBackend::new(200, 60)).expect("test backend");
+        let mut up = true;
+        bencher.bench_local(|| {
+            let key = if up { KeyCode::Right } else { KeyCode::Left };
+            up = !up;
+            update(&mut model, Msg::Key(KeyEvent::new(key, KeyModifiers::NONE)));
+            terminal
+                .draw(|frame| view(&model, Theme::COLOURED, frame))
+                .expect("drawn");
+        });
+    }
+}

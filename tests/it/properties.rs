@@ -215,7 +215,7 @@ fn no_random_split_beats_the_split() {
     let step = (0.01..5.0_f64, 0.01..5.0_f64, any::<bool>());
     let strategy = (
         proptest::array::uniform3(step),
-        0.001..3.14_f64,
+        0.001..3.1_f64,
         proptest::collection::vec((0.0..1.0_f64, 0.0..1.0_f64), 200),
     );
     hold(1500, &strategy, |(steps, total, splits)| {

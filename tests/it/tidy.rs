@@ -201,35 +201,6 @@ fn the_key_reference_is_in_step() {
 }
 
 #[test]
-fn the_scenario_reference_lists_every_number() {
-    let mut table =
-        String::from("| field | unit | allowed | default | is the |\n|---|---|---|---|---|\n");
-    for field in stoop::study::field::FIELDS {
-        let default = if field.default.is_empty() {
-            "-"
-        } else {
-            field.default
-        };
-        table.push_str(&format!(
-            "| `{}` | {} | {} | {default} | {} |\n",
-            field.path,
-            field.unit,
-            field.range(),
-            field.meaning
-        ));
-    }
-    let start = "<!-- fields: made from the table of fields; a test keeps it in step -->\n";
-    let end = "<!-- end of fields -->";
-    let text = fs::read_to_string(root().join("docs/scenario.md")).expect("docs/scenario.md");
-    let (head, rest) = text.split_once(start).expect("start mark");
-    let (_, tail) = rest.split_once(end).expect("end mark");
-    in_step(
-        "docs/scenario.md",
-        &format!("{head}{start}{table}{end}{tail}"),
-    );
-}
-
-#[test]
 fn the_output_reference_names_every_warning_and_the_csv_columns() {
     let output = fs::read_to_string(root().join("docs/output.md")).expect("docs/output.md");
     let warnings = fs::read_to_string(root().join("src/study/warning.rs")).expect("source");

@@ -73,8 +73,8 @@ pub(super) fn render(brief: &Brief, glyphs: Glyphs) -> String {
 }
 
 fn ways(brief: &Brief, page: &mut Page) {
-    page.line("  way        cost     dv  propellant   days  starts  longest burn  captured after");
-    page.line("              m/s    m/s");
+    page.line("  way         cost     dv  propellant   days  starts  longest   captured");
+    page.line("               m/s    m/s                               burn      after");
     for (way, plan) in &brief.answer.ways {
         let mark = if brief.answer.best == Some(*way) {
             '<'
@@ -87,7 +87,7 @@ fn ways(brief: &Brief, page: &mut Page) {
                 let used = plan.consumption;
                 let optional = |value: Option<String>| value.unwrap_or_else(|| "-".to_owned());
                 page.line(&format!(
-                    "{head} {:>8.1} {:>6.0} {:>11} {:>6} {:>7} {:>13} {:>15}",
+                    "{head} {:>8.1} {:>6.0} {:>11} {:>6} {:>7} {:>8} {:>10}",
                     1e3 * plan.cost_km_s,
                     1e3 * plan.dv_km_s,
                     optional(used.map(|used| words::kg(used.propellant_kg))),

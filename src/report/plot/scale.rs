@@ -119,7 +119,8 @@ fn linear_ticks(low: f64, high: f64, wanted: usize) -> Vec<f64> {
     let first = (low / step - 1e-9).ceil();
     let last = (high / step + 1e-9).floor();
     // A count beyond any screen means the step drowned in the size of the ends; no ticks then.
-    if !(last - first <= 200.0) {
+    let count = last - first;
+    if count.is_nan() || 200.0 < count {
         return Vec::new();
     }
     (0..=(last - first).max(0.0) as usize)
@@ -137,7 +138,7 @@ pub fn label(value: f64) -> String {
     };
     if magnitude == 0.0 {
         "0".to_owned()
-    } else if 1e12 <= magnitude || magnitude < 1e-3 {
+    } else if !(1e-3..1e12).contains(&magnitude) {
         format!("{value:.0e}")
     } else if 1e9 <= magnitude {
         short(value / 1e9, "G")
