@@ -28,6 +28,7 @@ pub(super) fn solve(setting: &Setting) -> Result<Path<2>, NotFlyable> {
     }
 }
 
+#[inline]
 fn at(setting: &Setting, q: f64) -> Result<Path<2>, NotFlyable> {
     path(setting, q).map_err(|no| NotFlyable::because(Reason::from_no_passage(no, q)))
 }

@@ -28,9 +28,13 @@ impl SpeedStep {
     }
 
     #[inline]
+    fn dv_sq_for_half_sine(&self, half_sine: f64) -> f64 {
+        self.difference * self.difference + 4.0 * self.before * self.after * half_sine * half_sine
+    }
+
+    #[inline]
     fn dv_for_half_sine(&self, half_sine: f64) -> f64 {
-        (self.difference * self.difference + 4.0 * self.before * self.after * half_sine * half_sine)
-            .sqrt()
+        self.dv_sq_for_half_sine(half_sine).sqrt()
     }
 
     #[inline]
@@ -61,7 +65,7 @@ impl SpeedStep {
 pub fn captured_share(step: SpeedStep, turn: f64, v_inf_sq: f64) -> Option<f64> {
     let half_sine = if turn == 0.0 { 0.0 } else { (0.5 * turn).sin() };
     let toward = step.before * (step.difference + 2.0 * step.after * half_sine * half_sine);
-    let dv_sq = step.dv_for_half_sine(half_sine).powi(2);
+    let dv_sq = step.dv_sq_for_half_sine(half_sine);
     let root = toward * toward - dv_sq * v_inf_sq;
     if root < 0.0 {
         return None;

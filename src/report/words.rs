@@ -260,6 +260,18 @@ fn crossings(case: &Case, best: &Standing, crossovers: &[Crossover]) -> String {
                 limit(below)
             )
         }
+        (Some(below), Some(above))
+            if below.above == best.way && above.below == best.way && below.below == above.above =>
+        {
+            format!(
+                "{} wins below {}{} and above {}{}.",
+                capital(below.below.name()),
+                at(below),
+                limit(below),
+                at(above),
+                limit(above)
+            )
+        }
         (Some(below), Some(above)) if below.above == best.way && above.below == best.way => {
             format!(
                 "{} wins below {}{}, {} above {}{}.",

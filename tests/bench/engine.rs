@@ -56,31 +56,31 @@ const TURNS: [f64; 2] = [0.0, 28.5];
 mod point {
     use super::*;
 
-    #[divan::bench(args = TURNS)]
+    #[divan::bench(args = TURNS, sample_size = 1000)]
     fn direct(bencher: Bencher, turn: f64) {
         let setting = setting(turn);
         bencher.bench_local(|| Way::Direct.figures(black_box(&setting)));
     }
 
-    #[divan::bench(args = TURNS)]
+    #[divan::bench(args = TURNS, sample_size = 1000)]
     fn dip(bencher: Bencher, turn: f64) {
         let setting = setting(turn);
         bencher.bench_local(|| Way::Dip.figures(black_box(&setting)));
     }
 
-    #[divan::bench(args = TURNS, name = "loop")]
+    #[divan::bench(args = TURNS, sample_size = 1000, name = "loop")]
     fn looped(bencher: Bencher, turn: f64) {
         let setting = setting(turn);
         bencher.bench_local(|| Way::Loop.figures(black_box(&setting)));
     }
 
-    #[divan::bench(args = TURNS)]
+    #[divan::bench(args = TURNS, sample_size = 1000)]
     fn loop_plan_with_burns(bencher: Bencher, turn: f64) {
         let setting = setting(turn);
         bencher.bench_local(|| Way::Loop.plan(black_box(&setting)));
     }
 
-    #[divan::bench(args = TURNS)]
+    #[divan::bench(args = TURNS, sample_size = 1000)]
     fn loop_best_brake_and_apoapsis(bencher: Bencher, turn: f64) {
         let setting = Setting {
             brake: Choice::Best,

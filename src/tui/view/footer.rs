@@ -3,7 +3,7 @@
 use crate::study::knob::{Knob, by_id};
 use crate::tui::action::{ACTIONS, Action, Entry};
 use crate::tui::layout::fit;
-use crate::tui::model::{Lens, Model, Overlay, Question, Tone};
+use crate::tui::model::{Model, Overlay, Question, Tone};
 use crate::tui::theme::Theme;
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
@@ -70,7 +70,7 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
             let line = format!("{prompt}{tail}_   Enter saves, Esc leaves");
             buffer.set_stringn(area.x, area.y, fit(&line, width), width, theme.strong());
         }
-        _ => hints(model, theme, area, buffer),
+        _ => hints(theme, area, buffer),
     }
 }
 
@@ -84,7 +84,7 @@ fn entry_hint(knob: &Knob) -> String {
 }
 
 /// The hints by importance; help and quit always stand at the end, the rest as far as there is room.
-fn hints(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
+fn hints(theme: Theme, area: Rect, buffer: &mut Buffer) {
     const LAST: [Action; 2] = [Action::Help, Action::Quit];
     let width = usize::from(area.width);
     let hint = |entry: &Entry| {
@@ -96,17 +96,7 @@ fn hints(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
                 .first()
                 .map_or_else(String::new, |key| key.shown()),
         };
-        let text = match entry.action {
-            Action::NextLens => {
-                Lens::ALL
-                    .iter()
-                    .find(|(lens, ..)| *lens == model.lens)
-                    .map_or("", |(_, name, _)| name)
-                    .to_owned()
-                    + " lens"
-            }
-            _ => entry.hint.to_owned(),
-        };
+        let text = entry.hint.to_owned();
         (key, text)
     };
     let length = |(key, text): &(String, String)| key.len() + text.len() + 3;

@@ -74,10 +74,11 @@ fn draw_knob(model: &Model, knob: &Knob, theme: Theme, area: Rect, buffer: &mut 
         }
         _ => shown(model, knob),
     };
-    let (open, close) = if selected { ("<", ">") } else { (" ", " ") };
-    let label = fit(knob.label, width.saturating_sub(value.len() + 5));
-    let gap = width.saturating_sub(label.len() + value.len() + 5);
-    let text = format!(" {label}{}{open} {value} {close}", " ".repeat(gap));
+    // The mark says without reversed video or colour which one is selected.
+    let mark = if selected { '>' } else { ' ' };
+    let label = fit(knob.label, width.saturating_sub(value.len() + 3));
+    let gap = width.saturating_sub(label.len() + value.len() + 2);
+    let text = format!("{mark}{label}{}{value} ", " ".repeat(gap));
     let style = if selected {
         theme.selected()
     } else {
@@ -91,7 +92,7 @@ fn shown(model: &Model, knob: &Knob) -> String {
     match knob.read(&model.case) {
         Err(_) => "-".to_owned(),
         Ok(Value::Best) => match knob.resolved(&model.case) {
-            Some(resolved) => format!("best, {}", words::altitude(resolved)),
+            Some(resolved) => format!("best {}", words::altitude(resolved)),
             None => "best".to_owned(),
         },
         Ok(Value::Number(number)) => {
