@@ -10,5 +10,6 @@ pub mod burn;
 pub mod catalogue;
 pub mod conic;
 pub mod pole;
+pub mod thrust_arc;
 pub mod transfer;
 pub mod vehicle;

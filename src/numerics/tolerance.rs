@@ -26,3 +26,9 @@ pub const STENCIL_RELATIVE: f64 = 5.0e-3;
 /// The exact ties (braking altitude equal to the target, apoapsis at the break-even radius) come out
 /// to a few 1e-16; one hundred times that keeps rounding from choosing the winner.
 pub const SAME_COST_RELATIVE: f64 = 1.0e-13;
+
+/// Relative accuracy of an integrated thrust arc, per step.
+///
+/// At 1e-10 the finite-burn loss of every reference case is within 1e-6 m/s of its value at 1e-12; half of it moves the
+/// loss by less (a test holds that to 0.01 m/s).
+pub const ARC_RELATIVE: f64 = 1.0e-10;

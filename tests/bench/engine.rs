@@ -91,6 +91,46 @@ mod point {
     }
 }
 
+mod arc {
+    use super::*;
+    use stoop::physics::thrust_arc::{Capture, Pointing};
+    use stoop::physics::vehicle::Vehicle;
+
+    /// A small engine at the Moon: a burn of 37 minutes.
+    fn capture() -> Capture {
+        Capture {
+            gm: 4902.8,
+            v_inf_sq: 0.85 * 0.85,
+            vehicle: Vehicle {
+                dry_mass_kg: 60.0,
+                propellant_kg: 90.0,
+                thrust_n: 22.0,
+                isp_s: 220.0,
+            },
+            pointing: Pointing::AgainstVelocity,
+            apoapsis_km: 10_000.0,
+        }
+    }
+
+    #[divan::bench]
+    fn to_shut_off(bencher: Bencher) {
+        let capture = capture();
+        bencher.bench_local(|| black_box(&capture).with_lead(1837.4, 1230.0));
+    }
+
+    #[divan::bench]
+    fn best_ignition(bencher: Bencher) {
+        let capture = capture();
+        bencher.bench_local(|| black_box(&capture).best_lead(1837.4));
+    }
+
+    #[divan::bench]
+    fn best_ignition_with_periapsis_held(bencher: Bencher) {
+        let capture = capture();
+        bencher.bench_local(|| black_box(&capture).held(1837.4));
+    }
+}
+
 mod study {
     use super::*;
 

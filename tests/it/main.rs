@@ -1,5 +1,6 @@
 //! The integration tests, one binary with a module for each concern.
 
+mod arcs;
 mod bad;
 mod cli;
 mod computed;
