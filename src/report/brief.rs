@@ -139,12 +139,10 @@ fn plane(case: &Case) -> String {
                 words::degrees(high)
             );
             match asymptote::b_plane_angle_rad(inclination.to_radians(), declination) {
-                Some(angle) => {
-                    let angle = words::degrees(angle);
-                    format!(
-                        "inclination {inclination} deg ({free}; B-plane angle {angle} or -{angle})"
-                    )
-                }
+                Some(angle) => format!(
+                    "inclination {inclination} deg ({free}; B-plane angle {})",
+                    words::b_plane(angle)
+                ),
                 None => format!("inclination {inclination} deg, outside the {free}"),
             }
         }

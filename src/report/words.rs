@@ -123,6 +123,16 @@ pub fn degrees(radians: f64) -> String {
     }
 }
 
+/// The B-plane angles that give an inclination, from one of them (rad): `57.0 deg or -57.0 deg`, or the one there is.
+pub fn b_plane(angle: f64) -> String {
+    let shown = degrees(angle);
+    if angle.sin().abs() < 1e-12 {
+        shown
+    } else {
+        format!("{shown} or -{shown}")
+    }
+}
+
 /// `1 start`, `2 starts`.
 pub fn starts(count: usize) -> String {
     if count == 1 {

@@ -12,7 +12,7 @@ pub const LEAST: (u16, u16) = (60, 20);
 /// lens                        | knobs       what is left
 /// verdict and why                           as many lines as the text needs
 /// table of ways                             one line and one for each way
-/// footer                                    one line
+/// footer                                    one line, more for a long message
 /// ```
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub struct Areas {
@@ -30,14 +30,19 @@ pub struct Areas {
     pub footer: Rect,
 }
 
-/// Divides a screen of `size` for a verdict of `verdict_lines` and a table of `table_lines`.
+/// Divides a screen of `size` for a verdict, a table and a footer of so many lines.
 ///
 /// The width of every area depends on the size alone, so that curves can be computed before texts are known.
-pub fn areas(size: (u16, u16), verdict_lines: usize, table_lines: usize) -> Areas {
+pub fn areas(
+    size: (u16, u16),
+    verdict_lines: usize,
+    table_lines: usize,
+    footer_lines: usize,
+) -> Areas {
     let (width, height) = size;
     let short = |lines: usize| u16::try_from(lines).unwrap_or(u16::MAX);
     let header = 1.min(height);
-    let footer = 1.min(height.saturating_sub(header));
+    let footer = short(footer_lines).min(height.saturating_sub(header));
     let rest = height.saturating_sub(header + footer);
     let table = short(table_lines).min(rest);
     let rest = rest.saturating_sub(table);
@@ -101,7 +106,7 @@ mod tests {
     fn areas_tile_every_size() {
         for width in 0..130 {
             for height in 0..50 {
-                let areas = areas((width, height), 5, 4);
+                let areas = areas((width, height), 5, 4, 1 + usize::from(width % 3));
                 let total: u16 = [
                     areas.header,
                     areas.lens,

@@ -312,7 +312,7 @@ fn curve_result(
         // A floor at the surface has no logarithm; a ten-thousandth of the range is as good as zero there.
         from = from.max(1e-4 * to);
     }
-    let columns = plot::columns(usize::from(layout::areas(size, 0, 0).lens.width));
+    let columns = plot::columns(usize::from(layout::areas(size, 0, 0, 1).lens.width));
     let axis = Axis::new(
         knob::by_id(KnobId::TargetAltitude),
         from,

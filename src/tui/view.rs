@@ -42,7 +42,13 @@ fn screen(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
         usize::from(area.width),
         usize::from(area.height),
     );
-    let areas = layout::areas((area.width, area.height), lines.len(), table::HEIGHT);
+    let size = (area.width, area.height);
+    let areas = layout::areas(
+        size,
+        lines.len(),
+        table::HEIGHT,
+        footer::height(model, usize::from(area.width)),
+    );
     header::draw(model, theme, areas.header, buffer);
     match model.lens {
         Lens::Curve => curve::draw(model, theme, areas.lens, buffer),

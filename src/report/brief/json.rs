@@ -232,7 +232,7 @@ fn arrival(brief: &Brief) -> ArrivalJson {
             .and_then(|(declination, inclination)| {
                 asymptote::b_plane_angle_rad(inclination, declination)
             })
-            .map(|angle| [angle.to_degrees(), -angle.to_degrees()]),
+            .map(|angle| [angle.to_degrees(), 0.0 - angle.to_degrees()]),
         departure_dv_m_s: journey.departure_dv_km_s.map(|dv| 1e3 * dv),
         transfer_days: journey.time_of_flight_s.map(|seconds| seconds / DAY_S),
         total_dv_m_s: journey

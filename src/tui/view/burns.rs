@@ -74,9 +74,8 @@ fn arrival(case: &Case, plan: &Plan, put: &mut impl FnMut(String)) {
     {
         match asymptote::b_plane_angle_rad(inclination.to_radians(), declination) {
             Some(angle) => put(format!(
-                "B-plane angle {} or -{} for inclination {inclination} deg",
-                words::degrees(angle),
-                words::degrees(angle)
+                "B-plane angle {} for inclination {inclination} deg",
+                words::b_plane(angle)
             )),
             None => {
                 let (low, high) = asymptote::free_inclination_rad(declination);

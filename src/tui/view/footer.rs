@@ -1,5 +1,6 @@
-//! The last line: a message if there is one, a prompt's help while typing, else the keys that matter now.
+//! The last line (or lines): a message if there is one, a prompt's help while typing, else the keys that matter now.
 
+use crate::report::words::wrap;
 use crate::study::knob::{Knob, by_id};
 use crate::tui::action::{ACTIONS, Action, Entry};
 use crate::tui::layout::fit;
@@ -10,8 +11,18 @@ use ratatui::layout::Rect;
 use ratatui::style::Style;
 use ratatui::text::{Line, Span};
 
-pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
-    let width = usize::from(area.width);
+/// Most lines a message takes.
+const MOST_LINES: usize = 4;
+
+/// Lines the footer takes.
+pub(super) fn height(model: &Model, width: usize) -> usize {
+    said(model).map_or(1, |(_, text)| {
+        wrap(&text, width.saturating_sub(2)).len().min(MOST_LINES)
+    })
+}
+
+/// A question or message, if there is one; it goes before hints.
+fn said(model: &Model) -> Option<(Tone, String)> {
     if let Some(Overlay::Ask(question)) = &model.overlay {
         let text = match question {
             Question::Quit => {
@@ -27,27 +38,21 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
                 "That file exists. y replaces it (the old one is kept with a ~), any other key stays."
             }
         };
-        buffer.set_stringn(
-            area.x,
-            area.y,
-            fit(&format!(" {text}"), width),
-            width,
-            theme.alert(),
-        );
-        return;
+        return Some((Tone::Refused, text.to_owned()));
     }
-    if let Some((tone, text)) = &model.message {
+    model.message.clone()
+}
+
+pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
+    let width = usize::from(area.width);
+    if let Some((tone, text)) = said(model) {
         let style = match tone {
             Tone::Done => theme.strong(),
             Tone::Refused => theme.alert(),
         };
-        buffer.set_stringn(
-            area.x,
-            area.y,
-            fit(&format!(" {text}"), width),
-            width,
-            style,
-        );
+        for (row, line) in (area.y..area.bottom()).zip(wrap(&text, width.saturating_sub(2))) {
+            buffer.set_stringn(area.x, row, format!(" {line}"), width, style);
+        }
         return;
     }
     match &model.overlay {
