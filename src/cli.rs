@@ -11,9 +11,11 @@ mod new;
 mod output;
 mod source;
 mod sweep;
+mod trouble;
 
 pub use args::{Cli, Command, GlyphsArg};
-pub use source::{open, with_settings};
+pub use source::opened;
+pub use trouble::{explain, is_closed_pipe, usage};
 
 use crate::scenario::file::Loaded;
 use anyhow::Result;

@@ -1,24 +1,35 @@
 //! Arguments in, exit code out. The only place that ends the process.
 
+use anyhow::Context;
 use clap::Parser;
 use std::io::{IsTerminal, Write};
-use std::path::Path;
 use std::process::ExitCode;
 use stoop::cli::{self, Cli};
-use stoop::scenario::file::{self, LoadError};
 use stoop::tui::{self, theme::Theme};
 
+/// Cannot run.
+const CANNOT: u8 = 2;
+
 fn main() -> ExitCode {
-    match run(&Cli::parse()) {
+    let result = match Cli::try_parse() {
+        Ok(cli) => run(&cli),
+        Err(error) if error.use_stderr() => {
+            say(&cli::usage(&error));
+            return ExitCode::from(CANNOT);
+        }
+        // Help and version are answers.
+        Err(help) => help
+            .print()
+            .and_then(|()| std::io::stdout().flush())
+            .map(|()| 0)
+            .context("standard output cannot be written"),
+    };
+    match result {
         Ok(code) => ExitCode::from(code),
-        Err(error) if is_closed_pipe(&error) => ExitCode::SUCCESS,
+        Err(error) if cli::is_closed_pipe(&error) => ExitCode::SUCCESS,
         Err(error) => {
-            // Faults of a file begin with their place, as editors and other programs expect it. Nothing can be said if
-            // standard error is closed too.
-            let faults = matches!(error.downcast_ref(), Some(LoadError::Faulty(_)));
-            let name = if faults { "" } else { "stoop: " };
-            let _ = writeln!(std::io::stderr(), "{name}{error:#}");
-            ExitCode::from(2)
+            say(&cli::explain(&error));
+            ExitCode::from(CANNOT)
         }
     }
 }
@@ -28,14 +39,7 @@ fn run(cli: &Cli) -> anyhow::Result<u8> {
         return Ok(cli::run(command)?.code());
     }
     let args = &cli.explore;
-    let (loaded, path) = match &args.file {
-        Some(path) => {
-            // What came through a pipe has no file to be saved into.
-            let is_file = path != Path::new("-");
-            (cli::open(path, &args.set)?, is_file.then(|| path.clone()))
-        }
-        None => (cli::with_settings(file::built_in(), &args.set)?, None),
-    };
+    let (loaded, path) = cli::opened(args)?;
     if !std::io::stdout().is_terminal() || !std::io::stdin().is_terminal() {
         return Ok(cli::plain_brief(&loaded, args.glyphs)?.code());
     }
@@ -55,11 +59,7 @@ fn run(cli: &Cli) -> anyhow::Result<u8> {
     )
 }
 
-/// Whether the reader of our output simply stopped reading.
-fn is_closed_pipe(error: &anyhow::Error) -> bool {
-    error.chain().any(|cause| {
-        cause
-            .downcast_ref::<std::io::Error>()
-            .is_some_and(|error| error.kind() == std::io::ErrorKind::BrokenPipe)
-    })
+/// Says something on standard error; if that is closed too, nothing can be said.
+fn say(text: &str) {
+    let _ = writeln!(std::io::stderr(), "{text}");
 }

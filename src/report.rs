@@ -2,8 +2,10 @@
 
 pub mod brief;
 pub mod checks;
+mod json;
 pub mod lists;
 pub mod plot;
+mod rerun;
 pub mod sources;
 pub mod sweep;
 pub mod words;

@@ -6,29 +6,72 @@ use std::path::PathBuf;
 
 const ABOUT: &str = "Decide how a spacecraft arrives at a moon or planet";
 
+// Paragraphs in one line each: the help is wrapped to the terminal it is shown in.
 const LONG_ABOUT: &str = "\
-Decide how a spacecraft arrives at a moon or planet: which target orbit, how low to
-brake, in one burn, two or three, with which engine and margin.
+Decide how a spacecraft arrives at a moon or planet: which target orbit, how low to brake, in one burn, two or three, with which engine and margin.
 
-stoop holds one scenario, recomputes every cost as knobs are turned, draws what every
-target altitude costs by each way of arriving (direct, dip, loop), marks the cheapest
-altitude and the crossovers where another way starts to pay, and writes the brief for
-the review.";
+stoop holds one scenario, recomputes every cost as knobs are turned, draws what every target altitude costs by each way of arriving, marks the cheapest altitude and the crossovers where another way starts to pay, and writes the brief for the review.
+
+The ways: direct is one burn at the periapsis of the target orbit; dip brakes low into an ellipse that reaches the target apoapsis and raises the periapsis there; loop brakes low into a long ellipse, changes plane and raises the periapsis far out, and comes back to brake into the target. Without a terminal `stoop` prints the brief as plain text.";
 
 const AFTER: &str = "\
 Examples:
-  stoop                                      the explorer on the built-in scenario
+  stoop                                      the explorer on a built-in scenario
   stoop new > mine.ron && stoop mine.ron     a scenario of your own
   stoop brief mine.ron --set target-altitude=9000 --format markdown
-  stoop sweep mine.ron --over v-inf --from 0.7 --to 1.1 --format csv
+  stoop sweep mine.ron --over thrust --from 20 --to 400 --format csv
   stoop check mine.ron                       recompute it by other routes
 
-Exit codes: 0 answered; 1 answered, but nothing is flyable (or a check disagrees);
-2 cannot run.
+Exit codes: 0 answered; 1 answered, but nothing is flyable (check: or a computation disagrees); 2 cannot run. Errors go to standard error as sentences; a closed pipe ends quietly with 0.
 
-Cautions: for concept and preliminary design only. Commanded manoeuvres need verified
-flight-dynamics software and review by qualified people. The rules of the launching
-state and agency on planetary protection and orbital debris apply.";
+Cautions: for concept and preliminary design only. Commanded manoeuvres need verified flight-dynamics software and review by qualified people. The rules of the launching state and agency on planetary protection and orbital debris apply.";
+
+const BRIEF_HELP: &str = "\
+Examples:
+  stoop brief mine.ron
+  stoop brief mine.ron --set brake-altitude=best --set \"thrust=22 N\"
+  stoop brief - --format json < mine.ron
+  stoop brief mine.ron --format markdown --output brief.md
+
+The brief ends with the scenario as it was asked, settings included: saved as a file it gives the same digits again.
+
+Exit codes: 0 answered; 1 answered, but nothing is flyable; 2 cannot run.";
+
+const SWEEP_HELP: &str = "\
+Examples:
+  stoop sweep mine.ron --over target-altitude --log
+  stoop sweep mine.ron --over isp --from 220 --to 330 --points 12 --format csv
+  stoop sweep mine.ron --over target-altitude --log --format svg --output c.svg
+  stoop sweep mine.ron --over target-altitude --log \\
+      --and thrust --and-from 20 --and-to 400
+
+Without --from and --to, target-altitude goes over the whole sensible range, floor to cap; every other knob needs both. `stoop knobs` lists the knobs.
+
+Exit codes: 0 answered; 1 nothing is flyable anywhere; 2 cannot run.";
+
+const CHECK_HELP: &str = "\
+Examples:
+  stoop check mine.ron
+  stoop check mine.ron --set target-altitude=9000
+
+Every figure stands beside the same figure found by another route, with the difference and what is allowed.
+
+Exit codes: 0 sound and all agree; 1 sound, but nothing is flyable or a computation disagrees; 2 the file has faults, or it cannot be read.";
+
+const NEW_HELP: &str = "\
+Examples:
+  stoop new > mine.ron
+  stoop new --output mine.ron      (a file that is there already is left as it is)";
+
+const BODIES_HELP: &str = "\
+Examples:
+  stoop bodies
+  stoop bodies --format json";
+
+const KNOBS_HELP: &str = "\
+Examples:
+  stoop knobs
+  stoop knobs --format json      (with the column of each knob in CSV and JSON)";
 
 /// The command line.
 #[derive(Debug, Parser)]
@@ -47,10 +90,10 @@ pub struct Cli {
 pub struct ExploreArgs {
     /// Scenario file, or - for standard input; without it the built-in scenario opens
     pub file: Option<PathBuf>,
-    /// Set a knob first, like target-altitude=9000 or thrust="22 N" (repeatable; `stoop knobs` lists them)
+    /// Set a knob first, like target-altitude=9000 or "thrust=22 N"; repeatable, applied in order
     #[arg(long, value_name = "KNOB=VALUE")]
     pub set: Vec<String>,
-    /// Symbols: 7-bit, or denser ones where the font has them
+    /// Symbols of curves
     #[arg(long, value_enum, default_value_t = GlyphsArg::Ascii)]
     pub glyphs: GlyphsArg,
 }
@@ -58,9 +101,9 @@ pub struct ExploreArgs {
 /// Symbols on the command line.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
 pub enum GlyphsArg {
-    /// 7-bit only, the same everywhere.
+    /// 7-bit only, the same everywhere
     Ascii,
-    /// Denser symbols, where the font has them.
+    /// Denser symbols, where the font has them
     Fine,
 }
 
@@ -77,29 +120,22 @@ impl From<GlyphsArg> for Glyphs {
 #[derive(Debug, Subcommand)]
 pub enum Command {
     /// The verdict, the ways side by side, burns, landmarks, warnings, sources and the cost curve
-    #[command(
-        after_help = "Exit codes: 0 answered; 1 answered, but nothing is flyable; 2 cannot run."
-    )]
+    #[command(after_help = BRIEF_HELP)]
     Brief(BriefArgs),
     /// A curve over one knob, or a map over two
-    #[command(after_help = "\
-Examples:
-  stoop sweep mine.ron --over target-altitude --points 200 --log --format csv
-  stoop sweep mine.ron --over target-altitude --from 1000 --to 20000 --and v-inf --and-from 0.7 --and-to 1.1
-
-Without --from and --to, target-altitude goes over the whole sensible range, floor to cap.
-Exit codes: 0 answered; 1 nothing flyable anywhere; 2 cannot run.")]
+    #[command(after_help = SWEEP_HELP)]
     Sweep(SweepArgs),
-    /// Is the file sound, and do other, more exact computations agree
-    #[command(
-        after_help = "Exit codes: 0 sound and all agree; 1 nothing flyable or a check disagrees; 2 cannot run."
-    )]
+    /// Is the file sound, and do independent computations agree
+    #[command(after_help = CHECK_HELP)]
     Check(CheckArgs),
     /// A commented scenario to start from
+    #[command(after_help = NEW_HELP)]
     New(NewArgs),
     /// The catalogue of bodies with the source of every value
+    #[command(after_help = BODIES_HELP)]
     Bodies(ListArgs),
     /// Every knob: name, unit, range, meaning
+    #[command(after_help = KNOBS_HELP)]
     Knobs(ListArgs),
 }
 
@@ -108,7 +144,7 @@ Exit codes: 0 answered; 1 nothing flyable anywhere; 2 cannot run.")]
 pub struct SourceArgs {
     /// Scenario file, or - for standard input
     pub file: PathBuf,
-    /// Set a knob first, like target-altitude=9000 or thrust="22 N" (repeatable; `stoop knobs` lists them)
+    /// Set a knob first, like target-altitude=9000 or "thrust=22 N"; repeatable, applied in order
     #[arg(long, value_name = "KNOB=VALUE")]
     pub set: Vec<String>,
 }
@@ -153,7 +189,7 @@ pub struct SweepArgs {
     #[command(flatten)]
     #[allow(missing_docs)]
     pub source: SourceArgs,
-    /// The knob to sweep
+    /// The knob to sweep, by its name in `stoop knobs`
     #[arg(long, value_name = "KNOB")]
     pub over: String,
     /// First value, with its unit if you like
@@ -169,7 +205,7 @@ pub struct SweepArgs {
     #[arg(long)]
     pub log: bool,
     /// A second knob, for a map
-    #[arg(long, value_name = "KNOB2", requires = "and_from", requires = "and_to")]
+    #[arg(long, value_name = "KNOB2")]
     pub and: Option<String>,
     /// First value of the second knob
     #[arg(long, value_name = "A2", allow_hyphen_values = true, requires = "and")]
@@ -181,7 +217,7 @@ pub struct SweepArgs {
     #[arg(long, value_name = "N2", default_value_t = 20)]
     pub and_points: usize,
     /// The second knob evenly spaced in the logarithm
-    #[arg(long)]
+    #[arg(long, requires = "and")]
     pub and_log: bool,
     /// Form of the result
     #[arg(long, value_enum, default_value_t = SweepFormat::Text)]

@@ -15,7 +15,7 @@ pub(super) fn run(args: &BriefArgs) -> Result<Outcome> {
         BriefFormat::Markdown => brief.markdown(),
         BriefFormat::Json => brief.json(),
     };
-    output::put(&args.output, &text)?;
+    output::put_beside(&args.source, &args.output, &text)?;
     Ok(Outcome::of(brief.flyable()))
 }
 

@@ -11,16 +11,16 @@ pub(super) fn run(args: &CheckArgs) -> Result<Outcome> {
     let loaded = source::open(&args.source.file, &args.source.set)?;
     let answer = Answer::of(&loaded.case);
     let checks = check::check(&loaded.case, &answer);
-    let name = crate::visible::ascii(&args.source.file.display().to_string()).into_owned();
     let mut text = format!(
-        "{name} is sound (fingerprint {})\n\n",
+        "{} is sound (fingerprint {})\n\n",
+        source::name(&args.source.file),
         write::fingerprint(loaded.case.spec())
     );
     if answer.best.is_none() {
         text.push_str("no way can be flown; only the ties of the ideal model are checked\n\n");
     }
     text.push_str(&checks::text(&checks));
-    output::put(&args.output, &text)?;
+    output::put_beside(&args.source, &args.output, &text)?;
     Ok(Outcome::of(
         answer.best.is_some() && checks.iter().all(check::Check::passed),
     ))

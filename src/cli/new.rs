@@ -6,6 +6,6 @@ use crate::scenario::write;
 use anyhow::Result;
 
 pub(super) fn run(args: &NewArgs) -> Result<Outcome> {
-    output::put(&args.output, write::template())?;
+    output::put_new(&args.output, write::template())?;
     Ok(Outcome::Answered)
 }

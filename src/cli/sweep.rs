@@ -16,8 +16,10 @@ pub(super) fn run(args: &SweepArgs) -> Result<Outcome> {
     let first = axis(
         case,
         source::find(&args.over)?,
-        args.from.as_deref(),
-        args.to.as_deref(),
+        &Ends {
+            from: ("--from", args.from.as_deref()),
+            to: ("--to", args.to.as_deref()),
+        },
         args.points,
         args.log,
     )?;
@@ -34,8 +36,10 @@ pub(super) fn run(args: &SweepArgs) -> Result<Outcome> {
             Some(axis(
                 case,
                 knob,
-                args.and_from.as_deref(),
-                args.and_to.as_deref(),
+                &Ends {
+                    from: ("--and-from", args.and_from.as_deref()),
+                    to: ("--and-to", args.and_to.as_deref()),
+                },
                 args.and_points,
                 args.and_log,
             )?)
@@ -70,18 +74,17 @@ pub(super) fn run(args: &SweepArgs) -> Result<Outcome> {
         SweepFormat::Json => sweep.json(),
         SweepFormat::Svg => sweep.svg(),
     };
-    output::put(&args.output, &text)?;
+    output::put_beside(&args.source, &args.output, &text)?;
     Ok(Outcome::of(sweep.flyable()))
 }
 
-fn axis(
-    case: &Case,
-    knob: &'static Knob,
-    from: Option<&str>,
-    to: Option<&str>,
-    points: usize,
-    log: bool,
-) -> Result<Axis> {
+/// The ends of an axis as typed, each with the name of its argument.
+struct Ends<'a> {
+    from: (&'static str, Option<&'a str>),
+    to: (&'static str, Option<&'a str>),
+}
+
+fn axis(case: &Case, knob: &'static Knob, ends: &Ends, points: usize, log: bool) -> Result<Axis> {
     // A knob that the scenario cannot have at all is refused before anything is computed.
     if !knob.offered(case)
         && let Err(why) = knob.read(case)
@@ -93,26 +96,34 @@ fn axis(
             .then(|| landmarks::sensible_range(case.setting()))
             .flatten()
     };
-    let end = |text: Option<&str>, name: &str, pick: fn((f64, f64)) -> f64| -> Result<f64> {
+    let end = |(name, text): (&str, Option<&str>), pick: fn((f64, f64)) -> f64| -> Result<f64> {
         match text {
             Some(text) => match entry::parse(knob, text).map_err(|why| anyhow!("{name}: {why}"))? {
                 Value::Number(number) => Ok(number),
                 Value::Best => bail!("{name} takes a number, not `best`"),
             },
+            None if log && sensible().is_some_and(|range| case.altitude_km(pick(range)) <= 0.0) => {
+                bail!(
+                    "--log needs {name} above 0 here, since the range of {} begins at the surface",
+                    knob.name
+                )
+            }
             None => sensible()
                 .map(|range| case.altitude_km(pick(range)))
                 .ok_or_else(|| {
                     anyhow!(
-                        "{} needs --from and --to ({})",
+                        "{} needs {} and {} ({})",
                         knob.name,
+                        ends.from.0,
+                        ends.to.0,
                         knob.range_field().range()
                     )
                 }),
         }
     };
     let (from, to) = (
-        end(from, "--from", |range| range.0)?,
-        end(to, "--to", |range| range.1)?,
+        end(ends.from, |range| range.0)?,
+        end(ends.to, |range| range.1)?,
     );
     Axis::new(knob, from, to, points, log).map_err(|why| anyhow!(why))
 }

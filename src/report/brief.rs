@@ -1,19 +1,23 @@
 //! The brief: the written result for a review. Gathered once, rendered as text, Markdown or JSON.
 
 mod json;
-pub(in crate::report) use json::landmarks_value;
 mod markdown;
 mod text;
 
+pub(super) use json::{LandmarksJson, PROGRAM, ProgramJson, landmarks as landmarks_json};
+
 use super::plot::{self, Glyphs, Mark, Plot, Quantity};
 use super::words;
-use crate::arrival::Way;
+use crate::arrival::{Plan, Way};
 use crate::study::curve::{self, Axis, Row};
 use crate::study::knob::{KnobId, by_id};
 use crate::study::landmarks;
 use crate::study::verdict::{self, Verdict};
 use crate::study::warning::{self, Warning};
 use crate::study::{Answer, Case};
+
+/// What stands over the scenario at the end of a brief.
+const RERUN_TITLE: &str = "The scenario, as a file that gives the same digits again";
 
 /// Everything a brief says about a case.
 #[derive(Debug)]
@@ -80,7 +84,8 @@ impl<'a> Brief<'a> {
             return Vec::new();
         };
         let to = case.altitude_km(high);
-        let from = case.altitude_km(low).max(1e-4 * to);
+        // A floor at the surface has no place on a logarithmic axis.
+        let from = case.altitude_km(low).max(1e-3 * to);
         let Ok(axis) = Axis::new(
             by_id(KnobId::TargetAltitude),
             from,
@@ -149,6 +154,55 @@ fn plane(case: &Case) -> String {
     }
 }
 
+/// The three radii whose largest names the cheapest way, as long as nothing else pulls.
+fn radii(brief: &Brief) -> String {
+    let radii = &brief.verdict.radii;
+    let or_none = |radius: Option<f64>| radius.map_or_else(|| "none".to_owned(), words::km);
+    format!(
+        "break-even {} (2 mu/v_inf^2), target apoapsis {}, loop apoapsis {}",
+        or_none(radii.break_even_km),
+        words::km(radii.target_apoapsis_km),
+        or_none(radii.loop_apoapsis_km)
+    )
+}
+
+/// How a way arrives: `dip: aiming radius 5541 km, v_inf 0.8119 km/s, with margin 699 m/s`.
+fn way_line(plan: &Plan) -> String {
+    format!(
+        "{}: aiming radius {}, v_inf {}, with margin {}",
+        plan.way.name(),
+        words::km(plan.aiming_radius_km),
+        words::speed(plan.v_inf_km_s),
+        words::dv(plan.dv_with_margin_km_s)
+    )
+}
+
+/// The warnings about a way, by code, to stand beside its numbers: `loop: tide-under-floor, burns-take-time`.
+fn flags(brief: &Brief) -> Vec<String> {
+    Way::TABLE
+        .iter()
+        .filter_map(|entry| {
+            let codes: Vec<&str> = brief
+                .warnings
+                .iter()
+                .filter(|warning| warning::about(warning) == Some(entry.way))
+                .map(|warning| warning.code)
+                .collect();
+            (!codes.is_empty())
+                .then(|| format!("{}: {} (see Warnings)", entry.name, codes.join(", ")))
+        })
+        .collect()
+}
+
+/// Program and fingerprint: with the scenario above it, all it takes to repeat the brief.
+fn colophon(brief: &Brief) -> String {
+    format!(
+        "stoop {}, scenario fingerprint {}",
+        env!("CARGO_PKG_VERSION"),
+        brief.fingerprint
+    )
+}
+
 /// Heading, arrival and target as short lines.
 fn facts(brief: &Brief) -> Vec<(&'static str, String)> {
     let case = brief.case;
@@ -180,12 +234,7 @@ fn facts(brief: &Brief) -> Vec<(&'static str, String)> {
         ),
     };
     facts.push(("arrival", arrival));
-    if let Some(radius) = brief.verdict.radii.break_even_km {
-        facts.push((
-            "break-even",
-            format!("radius {} (2 mu/v_inf^2)", words::km(radius)),
-        ));
-    }
+    facts.push(("radii", radii(brief)));
     facts.push((
         "target",
         format!(
@@ -199,9 +248,9 @@ fn facts(brief: &Brief) -> Vec<(&'static str, String)> {
     facts.push((
         "limits",
         format!(
-            "floor {}, cap {} radius, {}, {}{}",
+            "floor {}, cap {}, at most {} and {}{}",
             words::altitude(case.altitude_km(limits.floor_radius_km)),
-            words::km(limits.cap_radius_km),
+            words::altitude(case.altitude_km(limits.cap_radius_km)),
             words::time(limits.longest_s),
             words::starts(limits.most_starts),
             if limits.longest_burn_s.is_finite() {
@@ -227,7 +276,7 @@ fn facts(brief: &Brief) -> Vec<(&'static str, String)> {
     facts.push((
         "policy",
         format!(
-            "margin {} %, {} m/s for every extra start, residuals {} %",
+            "margin {} %, {} m/s for every start after the first, residuals {} %",
             policy.margin_percent, policy.per_start_m_s, policy.residual_percent
         ),
     ));

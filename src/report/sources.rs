@@ -1,6 +1,6 @@
 //! What stands behind the numbers: models, their sources, constants, and the cautions that go with every result.
 
-use crate::physics::catalogue;
+use crate::physics::catalogue::{self, Entry, Sourced};
 use crate::study::Case;
 use crate::study::spec::{ArrivalSpec, BodySpec, Model, PlaneSpec};
 use crate::visible::ascii;
@@ -35,11 +35,22 @@ pub fn sources(case: &Case) -> Vec<String> {
         "Two-body mechanics round one body, impulsive burns at apsides (any astrodynamics textbook).".to_owned(),
         arrival_source(&case.spec().arrival).to_owned(),
     ];
-    if !matches!(case.spec().target.plane, PlaneSpec::Any) {
+    let plane = case.spec().target.plane;
+    if !matches!(plane, PlaneSpec::Any) {
         out.push("Plane change about the line of apsides, split over the burns at its cheapest; turn for a missing inclination: sin theta = sin m / sin nu (derived, docs/model.md).".to_owned());
     }
+    if case.declination_rad().is_some() && matches!(plane, PlaneSpec::InclinationDeg(_)) {
+        out.push(
+            "B-plane angle from cos i = cos d cos theta (Kizner 1959, JPL EP-674).".to_owned(),
+        );
+    }
+    out.push("Break-even radius 2 mu/v_inf^2 (Curtis, Orbital Mechanics for Engineering Students, section 8.8). Cheapest altitude and crossovers are searched with the costs as they are, not taken from it.".to_owned());
     if case.setting().vehicle.is_some() {
         out.push("Rocket equation with g0 = 9.80665 m/s2 (3rd CGPM, 1901); margin and residual practice after ESA SRE-PA/2011.097.".to_owned());
+        out.push("Finite-burn loss, for the warning only: dv t^2 mu/(24 r^3), first order, fixed attitude (derived, docs/model.md).".to_owned());
+    }
+    if case.body().parent.is_some() {
+        out.push("Sphere of influence a (m/M)^0.4 (Laplace); Hill radius a (1 - e)(m/3M)^(1/3) (Hamilton & Burns 1992, Icarus 96, 43); tide, for the warning only (Lidov 1962, Planet. Space Sci. 9, 719).".to_owned());
     }
     out.push(NOT_MODELLED.to_owned());
     out.extend(constants(case));
@@ -71,41 +82,130 @@ fn arrival_source(arrival: &ArrivalSpec) -> &'static str {
     }
 }
 
+/// The constants that enter, grouped by source.
 fn constants(case: &Case) -> Vec<String> {
     let mut out = Vec::new();
+    let mut cited = Cited::default();
     match &case.spec().body {
         BodySpec::Custom(body) => out.push(format!(
             "Constants of {} as stated in the scenario.",
             ascii(&body.name)
         )),
         BodySpec::Known(name) => {
-            // Citation and what it is for, in the order met.
-            let mut cited: Vec<(&'static str, Vec<String>)> = Vec::new();
-            let names = std::iter::once(name.as_str())
-                .chain(case.body().parent.iter().map(|parent| parent.name.as_str()));
-            for (k, entry) in names.filter_map(catalogue::entry).enumerate() {
-                // Of the parent only GM and radius enter.
-                let orbit = entry.semi_major_axis_km.filter(|_| k == 0);
-                for (what, value) in [
-                    ("GM", Some(entry.gm_km3_s2)),
-                    ("radius", Some(entry.radius_km)),
-                    ("orbit", orbit),
-                ] {
-                    let Some(value) = value else { continue };
-                    let what = format!("{} {what}", entry.name);
-                    match cited
-                        .iter_mut()
-                        .find(|(cite, _)| *cite == value.source.cite())
-                    {
-                        Some((_, uses)) => uses.push(what),
-                        None => cited.push((value.source.cite(), vec![what])),
-                    }
+            use Constant::{Gm, Lowest, Orbit, Radius};
+            cited.add(name, &[Gm, Radius, Orbit, Lowest]);
+            if let Some(parent) = &case.body().parent {
+                cited.add(&parent.name, &[Gm]);
+                // Only a transfer that starts at an altitude over the parent needs its radius.
+                if matches!(case.spec().arrival, ArrivalSpec::FromParentOrbit { .. }) {
+                    cited.add(&parent.name, &[Radius]);
                 }
             }
-            out.extend(cited.into_iter().map(|(cite, uses)| {
-                format!("{}: {}.", uses.join(", "), cite.trim_end_matches('.'))
-            }));
         }
     }
+    if let ArrivalSpec::Transfer {
+        from,
+        parking_alt_km,
+    } = &case.spec().arrival
+    {
+        cited.add(from, &[Constant::Orbit]);
+        if parking_alt_km.is_some() {
+            cited.add(from, &[Constant::Gm, Constant::Radius]);
+        }
+    }
+    out.extend(cited.sentences());
     out
+}
+
+/// Citations, each with what it is for, in the order met.
+#[derive(Default)]
+struct Cited(Vec<(&'static str, Vec<String>)>);
+
+impl Cited {
+    fn add(&mut self, name: &str, wanted: &[Constant]) {
+        let Some(entry) = catalogue::entry(name) else {
+            return;
+        };
+        for constant in wanted {
+            let Some(value) = constant.of(entry) else {
+                continue;
+            };
+            let what = format!("{} {}", entry.name, constant.name());
+            match self
+                .0
+                .iter_mut()
+                .find(|(cite, _)| *cite == value.source.cite())
+            {
+                Some((_, uses)) => uses.push(what),
+                None => self.0.push((value.source.cite(), vec![what])),
+            }
+        }
+    }
+
+    fn sentences(self) -> impl Iterator<Item = String> {
+        self.0
+            .into_iter()
+            .map(|(cite, uses)| format!("{}: {}.", uses.join(", "), cite.trim_end_matches('.')))
+    }
+}
+
+/// A constant of the catalogue that can enter a result.
+#[derive(Clone, Copy)]
+enum Constant {
+    Gm,
+    Radius,
+    Orbit,
+    Lowest,
+}
+
+impl Constant {
+    fn name(self) -> &'static str {
+        match self {
+            Constant::Gm => "GM",
+            Constant::Radius => "radius",
+            Constant::Orbit => "orbit",
+            Constant::Lowest => "lowest altitude",
+        }
+    }
+
+    fn of(self, entry: &Entry) -> Option<Sourced> {
+        match self {
+            Constant::Gm => Some(entry.gm_km3_s2),
+            Constant::Radius => Some(entry.radius_km),
+            Constant::Orbit => entry.semi_major_axis_km,
+            Constant::Lowest => Some(entry.lowest_alt_km),
+        }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::scenario::file;
+
+    #[test]
+    fn every_body_that_enters_is_cited_and_no_other() {
+        let text = r#"(
+            format: 1,
+            body: Known("Mars"),
+            arrival: Transfer(from: "Earth", parking_alt_km: 300.0),
+            target: (shape: Circular(altitude_km: 400.0)),
+        )"#;
+        let case = file::parse("transfer", text)
+            .unwrap_or_else(|faults| panic!("{faults}"))
+            .case;
+        let all = sources(&case).join("\n");
+        for needed in [
+            "Mars GM",
+            "Mars lowest altitude",
+            "Earth GM",
+            "Earth radius",
+            "Earth orbit",
+            "Sun GM",
+        ] {
+            assert!(all.contains(needed), "{needed} is not in\n{all}");
+        }
+        assert!(!all.contains("Sun radius"), "{all}");
+        assert!(all.is_ascii());
+    }
 }

@@ -3,8 +3,10 @@
 use super::Brief;
 use crate::arrival::{NotFlyable, Plan, Way};
 use crate::physics::asymptote;
-use crate::report::{sources, words};
+use crate::report::{json, rerun, sources, words};
+use crate::study::Case;
 use crate::study::case::DAY_S;
+use crate::study::landmarks::Landmarks;
 use crate::study::spec::PlaneSpec;
 use serde::Serialize;
 
@@ -17,6 +19,7 @@ struct BriefJson {
     body: BodyJson,
     arrival: ArrivalJson,
     target: TargetJson,
+    limits: LimitsJson,
     ways: Vec<WayJson>,
     best: Option<&'static str>,
     landmarks: LandmarksJson,
@@ -25,16 +28,24 @@ struct BriefJson {
     cautions: &'static [&'static str],
 }
 
+/// Name and version of the program that wrote a result.
 #[derive(Serialize)]
-struct ProgramJson {
+pub(in crate::report) struct ProgramJson {
     name: &'static str,
     version: &'static str,
 }
+
+/// This program.
+pub(in crate::report) const PROGRAM: ProgramJson = ProgramJson {
+    name: "stoop",
+    version: env!("CARGO_PKG_VERSION"),
+};
 
 #[derive(Serialize)]
 struct ScenarioJson {
     title: String,
     fingerprint: String,
+    ron: String,
 }
 
 #[derive(Serialize)]
@@ -42,6 +53,9 @@ struct VerdictJson {
     sentence: String,
     why: String,
     moved_by: Vec<String>,
+    break_even_radius_km: Option<f64>,
+    target_apoapsis_radius_km: f64,
+    loop_apoapsis_radius_km: Option<f64>,
 }
 
 #[derive(Serialize)]
@@ -73,6 +87,15 @@ struct TargetJson {
     apoapsis_radius_km: f64,
     period_h: f64,
     inclination_deg: Option<f64>,
+}
+
+#[derive(Serialize)]
+struct LimitsJson {
+    floor_radius_km: f64,
+    cap_radius_km: f64,
+    longest_days: f64,
+    most_starts: usize,
+    longest_burn_s: Option<f64>,
 }
 
 #[derive(Serialize)]
@@ -122,8 +145,9 @@ struct OrbitJson {
     period_h: f64,
 }
 
+/// The landmarks as JSON has them.
 #[derive(Serialize)]
-struct LandmarksJson {
+pub(in crate::report) struct LandmarksJson {
     cheapest: Option<CheapestJson>,
     crossovers: Vec<CrossoverJson>,
 }
@@ -152,22 +176,24 @@ struct WarningJson {
 pub(super) fn render(brief: &Brief) -> String {
     let value = BriefJson {
         format: 1,
-        program: ProgramJson {
-            name: "stoop",
-            version: env!("CARGO_PKG_VERSION"),
-        },
+        program: PROGRAM,
         scenario: ScenarioJson {
             title: brief.case.spec().title.clone(),
             fingerprint: brief.fingerprint.clone(),
+            ron: rerun::lines(brief.case.spec()).join("\n") + "\n",
         },
         verdict: VerdictJson {
             sentence: brief.sentence.clone(),
             why: brief.why.clone(),
             moved_by: brief.shifts.clone(),
+            break_even_radius_km: brief.verdict.radii.break_even_km,
+            target_apoapsis_radius_km: brief.verdict.radii.target_apoapsis_km,
+            loop_apoapsis_radius_km: brief.verdict.radii.loop_apoapsis_km,
         },
         body: body(brief),
         arrival: arrival(brief),
         target: target(brief),
+        limits: limits(brief),
         ways: brief
             .answer
             .ways
@@ -187,10 +213,7 @@ pub(super) fn render(brief: &Brief) -> String {
         sources: sources::sources(brief.case),
         cautions: sources::CAUTIONS,
     };
-    // These structures hold nothing that JSON cannot: text keys, finite numbers (serde_json writes null for others).
-    let mut text = serde_json::to_string_pretty(&value).unwrap_or_default();
-    text.push('\n');
-    text
+    json::text(&value)
 }
 
 fn body(brief: &Brief) -> BodyJson {
@@ -232,6 +255,7 @@ fn arrival(brief: &Brief) -> ArrivalJson {
             .and_then(|(declination, inclination)| {
                 asymptote::b_plane_angle_rad(inclination, declination)
             })
+            // 0 - 0 is 0, where -0 would be written as such.
             .map(|angle| [angle.to_degrees(), 0.0 - angle.to_degrees()]),
         departure_dv_m_s: journey.departure_dv_km_s.map(|dv| 1e3 * dv),
         transfer_days: journey.time_of_flight_s.map(|seconds| seconds / DAY_S),
@@ -252,6 +276,18 @@ fn target(brief: &Brief) -> TargetJson {
             PlaneSpec::InclinationDeg(inclination) => Some(inclination),
             _ => None,
         },
+    }
+}
+
+fn limits(brief: &Brief) -> LimitsJson {
+    let limits = &brief.case.setting().limits;
+    let stated = &brief.case.spec().limits;
+    LimitsJson {
+        floor_radius_km: limits.floor_radius_km,
+        cap_radius_km: limits.cap_radius_km,
+        longest_days: stated.longest_days,
+        most_starts: limits.most_starts,
+        longest_burn_s: stated.longest_burn_s,
     }
 }
 
@@ -315,10 +351,8 @@ fn way(brief: &Brief, way: Way, plan: &Result<Plan, NotFlyable>) -> WayJson {
     }
 }
 
-fn landmarks(
-    case: &crate::study::Case,
-    marks: &crate::study::landmarks::Landmarks,
-) -> LandmarksJson {
+/// The landmarks; the sweep's JSON has them too.
+pub(in crate::report) fn landmarks(case: &Case, marks: &Landmarks) -> LandmarksJson {
     LandmarksJson {
         cheapest: marks.cheapest.map(|cheapest| CheapestJson {
             altitude_km: case.altitude_km(cheapest.radius_km),
@@ -335,12 +369,4 @@ fn landmarks(
             })
             .collect(),
     }
-}
-
-/// The landmarks as a JSON value, for the sweep's JSON.
-pub(in crate::report) fn landmarks_value(
-    case: &crate::study::Case,
-    marks: &crate::study::landmarks::Landmarks,
-) -> serde_json::Value {
-    serde_json::to_value(landmarks(case, marks)).unwrap_or(serde_json::Value::Null)
 }

@@ -1,39 +1,24 @@
 //! The brief as plain text: at most 80 columns, 7-bit, readable from top to bottom without layout.
 
-use super::{Brief, facts, landmark_lines};
+use super::{Brief, colophon, facts, flags, landmark_lines, way_line};
+use crate::arrival::{Burn, Plan, Way};
 use crate::report::plot::Glyphs;
-use crate::report::{sources, words};
+use crate::report::{rerun, sources, words};
+use crate::study::Case;
 use crate::visible::ascii;
-use std::fmt::Write;
 
 const WIDTH: usize = 78;
 
 /// Renders the brief.
 pub(super) fn render(brief: &Brief, glyphs: Glyphs) -> String {
     let mut page = Page(String::new());
-    let spec = brief.case.spec();
-    let title = if spec.title.is_empty() {
-        "Arrival brief".to_owned()
-    } else {
-        ascii(&spec.title).into_owned()
-    };
-    page.wrapped("", &title);
-    page.line(&"=".repeat(title.len().min(WIDTH)));
-    if !spec.note.is_empty() {
-        page.wrapped("", &ascii(&spec.note));
-    }
-    page.line("");
-    page.wrapped("", &brief.sentence);
-    page.wrapped("", &brief.why);
-    for shift in &brief.shifts {
-        page.item(shift);
-    }
+    head(brief, &mut page);
     page.heading("Case");
     for (name, fact) in facts(brief) {
-        page.labelled(name, &fact);
+        page.hanging(&format!("{name:<11}"), &ascii(&fact));
     }
     page.heading("Ways");
-    ways(brief, &mut page);
+    ways(brief, glyphs, &mut page);
     page.heading("Burns");
     burns(brief, &mut page);
     page.heading("Landmarks");
@@ -44,7 +29,7 @@ pub(super) fn render(brief: &Brief, glyphs: Glyphs) -> String {
     for line in brief.curve(WIDTH, 18, glyphs) {
         page.line(&line);
     }
-    page.line("= direct   v dip   o loop   * cheapest   X crossover   | here   gap: not flyable");
+    page.paragraph(&legend(glyphs));
     page.heading("Warnings");
     if brief.warnings.is_empty() {
         page.item("none");
@@ -54,94 +39,115 @@ pub(super) fn render(brief: &Brief, glyphs: Glyphs) -> String {
     }
     page.heading("Assumptions and sources");
     for source in sources::sources(brief.case) {
-        page.item(&source);
+        page.item(&ascii(&source));
     }
     page.heading("Cautions");
     for caution in sources::CAUTIONS {
         page.item(caution);
     }
+    page.heading(super::RERUN_TITLE);
+    for line in rerun::narrow(brief.case.spec(), WIDTH) {
+        page.line(&line);
+    }
     page.line("");
-    page.wrapped(
-        "",
-        &format!(
-            "stoop {}, scenario fingerprint {}",
-            env!("CARGO_PKG_VERSION"),
-            brief.fingerprint
-        ),
-    );
+    page.paragraph(&colophon(brief));
     page.0
 }
 
-fn ways(brief: &Brief, page: &mut Page) {
-    page.line("  way         cost     dv  propellant   days  starts  longest   captured");
-    page.line("               m/s    m/s                               burn      after");
+/// Title, note, and the verdict before anything else.
+fn head(brief: &Brief, page: &mut Page) {
+    let spec = brief.case.spec();
+    let title = if spec.title.trim().is_empty() {
+        "Arrival brief".to_owned()
+    } else {
+        ascii(&spec.title).into_owned()
+    };
+    page.paragraph(&title);
+    page.line(&"=".repeat(title.len().min(WIDTH)));
+    if !spec.note.trim().is_empty() {
+        page.paragraph(&ascii(&spec.note));
+    }
+    page.line("");
+    page.paragraph(&ascii(&brief.sentence));
+    page.paragraph(&ascii(&brief.why));
+    for shift in &brief.shifts {
+        page.item(&ascii(shift));
+    }
+}
+
+/// The symbol of a way: of its curve, and before its name in the table.
+fn symbol(way: Way, glyphs: Glyphs) -> char {
+    match (glyphs, way) {
+        (Glyphs::Ascii, _) => way.entry().glyph,
+        (Glyphs::Fine, Way::Direct) => '\u{2500}',
+        (Glyphs::Fine, Way::Dip) => '\u{b7}',
+        (Glyphs::Fine, Way::Loop) => 'o',
+    }
+}
+
+fn legend(glyphs: Glyphs) -> String {
+    let ways: Vec<String> = Way::TABLE
+        .iter()
+        .map(|entry| format!("{} {}", symbol(entry.way, glyphs), entry.name))
+        .collect();
+    format!(
+        "{}, * cheapest direct, X crossover, | here, gap: not flyable",
+        ways.join(", ")
+    )
+}
+
+fn ways(brief: &Brief, glyphs: Glyphs, page: &mut Page) {
+    page.line("way          cost       dv propellant      with   days starts   longest captured");
+    page.line("              m/s      m/s              margin                     burn    after");
     for (way, plan) in &brief.answer.ways {
         let mark = if brief.answer.best == Some(*way) {
             '<'
         } else {
             ' '
         };
-        let head = format!("{} {:<6}{mark}", way.entry().glyph, way.name());
+        let head = format!("{} {:<6}{mark}", symbol(*way, glyphs), way.name());
         match plan {
-            Ok(plan) => {
-                let used = plan.consumption;
-                let optional = |value: Option<String>| value.unwrap_or_else(|| "-".to_owned());
-                page.line(&format!(
-                    "{head} {:>8.1} {:>6.0} {:>11} {:>6} {:>7} {:>8} {:>10}",
-                    1e3 * plan.cost_km_s,
-                    1e3 * plan.dv_km_s,
-                    optional(used.map(|used| words::kg(used.propellant_kg))),
-                    words::days(plan.duration_s),
-                    plan.starts(),
-                    optional(used.map(|used| words::time(used.longest_burn_s))),
-                    optional(
-                        plan.captured_share
-                            .map(|share| format!("{:.0} %", 100.0 * share))
-                    ),
-                ));
-            }
+            Ok(plan) => page.line(&format!("{head}{}", figures(plan))),
             Err(not) => page.hanging(
                 &format!("{head} "),
                 &format!("not flyable: {}", words::reasons(brief.case, not)),
             ),
         }
     }
+    if brief.answer.best.is_some() {
+        page.line("< cheapest");
+    }
+    for flag in flags(brief) {
+        page.hanging("! ", &flag);
+    }
+}
+
+/// A way's numbers under the headings of the table.
+fn figures(plan: &Plan) -> String {
+    let used = plan.consumption;
+    let optional = |value: Option<String>| value.unwrap_or_else(|| "-".to_owned());
+    format!(
+        " {:>7.1} {:>8.1} {:>10} {:>9} {:>6} {:>6} {:>9} {:>8}",
+        1e3 * plan.cost_km_s,
+        1e3 * plan.dv_km_s,
+        optional(used.map(|used| words::kg(used.propellant_kg))),
+        optional(used.map(|used| words::kg(used.propellant_with_margin_kg))),
+        words::days(plan.duration_s),
+        plan.starts(),
+        optional(used.map(|used| words::time(used.longest_burn_s))),
+        optional(
+            plan.captured_share
+                .map(|share| format!("{:.0} %", 100.0 * share))
+        ),
+    )
 }
 
 fn burns(brief: &Brief, page: &mut Page) {
-    let case = brief.case;
-    for (way, plan) in &brief.answer.ways {
+    for (_, plan) in &brief.answer.ways {
         let Ok(plan) = plan else { continue };
-        page.wrapped(
-            "",
-            &format!(
-                "{}: aiming radius {}, v_inf {}, with margin {}",
-                way.name(),
-                words::km(plan.aiming_radius_km),
-                words::speed(plan.v_inf_km_s),
-                words::dv(plan.dv_with_margin_km_s)
-            ),
-        );
+        page.paragraph(&way_line(plan));
         for (k, burn) in plan.burns.iter().enumerate() {
-            let engine = match (burn.propellant_kg, burn.duration_s) {
-                (Some(propellant), Some(duration)) => {
-                    format!(", {} in {}", words::kg(propellant), words::time(duration))
-                }
-                _ => String::new(),
-            };
-            let turn = if burn.turn_rad == 0.0 {
-                String::new()
-            } else {
-                format!(", turn {}", words::degrees(burn.turn_rad))
-            };
-            page.item(&format!(
-                "burn {} at {}: {}{turn}{engine}; leaves {} x {}",
-                k + 1,
-                words::altitude(case.altitude_km(burn.at_radius_km)),
-                words::dv(burn.dv_km_s),
-                words::altitude(case.altitude_km(burn.orbit_after.periapsis_km)),
-                words::altitude(case.altitude_km(burn.orbit_after.apoapsis_km)),
-            ));
+            page.item(&burn_line(brief.case, k, burn));
         }
     }
     if brief.answer.best.is_none() {
@@ -149,12 +155,37 @@ fn burns(brief: &Brief, page: &mut Page) {
     }
 }
 
+fn burn_line(case: &Case, k: usize, burn: &Burn) -> String {
+    let at = |radius: f64| words::altitude(case.altitude_km(radius));
+    let engine = match (burn.propellant_kg, burn.duration_s) {
+        (Some(propellant), Some(duration)) => {
+            format!(", {} in {}", words::kg(propellant), words::time(duration))
+        }
+        _ => String::new(),
+    };
+    let turn = if burn.turn_rad == 0.0 {
+        String::new()
+    } else {
+        format!(", turn {}", words::degrees(burn.turn_rad))
+    };
+    format!(
+        "burn {} at {}: {} ({:.4} to {}){turn}{engine}; leaves {} x {}",
+        k + 1,
+        at(burn.at_radius_km),
+        words::dv(burn.dv_km_s),
+        burn.speed_before_km_s,
+        words::speed(burn.speed_after_km_s),
+        at(burn.orbit_after.periapsis_km),
+        at(burn.orbit_after.apoapsis_km),
+    )
+}
+
 struct Page(String);
 
 impl Page {
     fn line(&mut self, text: &str) {
-        // Writing to a string cannot fail.
-        let _ = writeln!(self.0, "{}", text.trim_end());
+        self.0.push_str(text.trim_end());
+        self.0.push('\n');
     }
 
     fn heading(&mut self, text: &str) {
@@ -163,28 +194,26 @@ impl Page {
         self.line(&"-".repeat(text.len()));
     }
 
-    fn wrapped(&mut self, lead: &str, text: &str) {
-        self.hanging(lead, text);
+    fn paragraph(&mut self, text: &str) {
+        self.hanging("", text);
     }
 
     fn item(&mut self, text: &str) {
         self.hanging("- ", text);
     }
 
-    fn labelled(&mut self, name: &str, text: &str) {
-        self.hanging(&format!("{name:<11}"), text);
-    }
-
     /// A paragraph whose further lines stand under the first after its lead.
     fn hanging(&mut self, lead: &str, text: &str) {
-        for (k, line) in words::wrap(text, WIDTH.saturating_sub(lead.len()))
+        // Counted in characters: the lead may hold a fine symbol.
+        let cells = lead.chars().count();
+        for (k, line) in words::wrap(text, WIDTH.saturating_sub(cells))
             .iter()
             .enumerate()
         {
             if k == 0 {
                 self.line(&format!("{lead}{line}"));
             } else {
-                self.line(&format!("{}{line}", " ".repeat(lead.len())));
+                self.line(&format!("{}{line}", " ".repeat(cells)));
             }
         }
     }
