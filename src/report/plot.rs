@@ -346,7 +346,12 @@ fn draw_x_labels(picture: &mut Picture, plot: &Plot, frame: &Frame, axis_y: usiz
     };
     // `here` has its word where it fits; tick labels make room for it.
     let here = plot.here.and_then(|here| scale.cell(here));
-    let mut free_from = 0;
+    // Labels start right of a title in the gutter, with a blank between.
+    let mut free_from = if title.len() < GUTTER {
+        title.len() + 1
+    } else {
+        0
+    };
     let mut taken: Vec<(usize, usize)> = Vec::new();
     if let Some(cell) = here {
         let at = (GUTTER + cell).saturating_sub(1);
@@ -361,7 +366,7 @@ fn draw_x_labels(picture: &mut Picture, plot: &Plot, frame: &Frame, axis_y: usiz
         };
         picture.put(GUTTER + cell, axis_y, '+', Role::Axis);
         let text = label(tick);
-        let at = (GUTTER + cell).saturating_sub(text.len() / 2);
+        let at = (GUTTER + cell).saturating_sub(text.len() / 2).max(GUTTER);
         let end = at + text.len();
         let clear = taken.iter().all(|(from, to)| end < *from || *to < at);
         if free_from <= at && end + 1 < title_at && end <= picture.width && clear {

@@ -106,7 +106,7 @@ fn plan_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
     let momentum = plan.aiming_radius_km * plan.v_inf_km_s;
     if let Some(first) = plan.burns.first() {
         add(
-            "aiming radius".to_owned(),
+            "speed at the first periapsis, from the aiming radius".to_owned(),
             "angular momentum far out and at periapsis",
             momentum / q,
             first.speed_before_km_s,

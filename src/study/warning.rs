@@ -22,7 +22,20 @@ pub fn warnings(case: &Case, answer: &Answer) -> Vec<Warning> {
     low_floor(case, &mut out);
     if let Some(plan) = answer.best_plan() {
         uncaptured(plan, &mut out);
+    }
+    // What can go wrong with a way is said of every way that can be flown, not of the cheapest alone.
+    for plan in answer
+        .ways
+        .iter()
+        .filter_map(|(_, plan)| plan.as_ref().ok())
+    {
         tide(case, plan, &mut out);
+    }
+    for plan in answer
+        .ways
+        .iter()
+        .filter_map(|(_, plan)| plan.as_ref().ok())
+    {
         impulsive(case, plan, &mut out);
     }
     assumptions(case, &mut out);
