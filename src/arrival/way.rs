@@ -125,8 +125,12 @@ pub struct Burn {
 /// What a way costs, without its burns: all that a curve or a search asks for. Copies without allocating.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Figures {
-    /// v∞ of the hyperbola it arrives on, km/s.
-    pub v_inf_km_s: f64,
+    /// v∞² of the hyperbola it arrives on, km²/s².
+    pub v_inf_sq: f64,
+    /// Speeds of the first burn.
+    pub first_step: SpeedStep,
+    /// Turn of the first burn, rad.
+    pub first_turn: f64,
     /// Δv spent by all burns, before margins, km/s.
     pub dv_km_s: f64,
     /// Δv if no burn took time, km/s.
@@ -139,8 +143,6 @@ pub struct Figures {
     pub duration_s: f64,
     /// Number of burns.
     pub starts: usize,
-    /// Share of the first burn's own Δv after which the spacecraft is captured.
-    pub captured_share: Option<f64>,
     /// Masses and times, where a vehicle is given.
     pub consumption: Option<Consumption>,
 }
@@ -414,14 +416,15 @@ impl<const N: usize> Path<N> {
         let dv: f64 = spent.iter().sum();
         let policy = &setting.policy;
         let mut figures = Figures {
-            v_inf_km_s: self.v_inf_sq.sqrt(),
+            v_inf_sq: self.v_inf_sq,
+            first_step: self.steps[0],
+            first_turn: angles[0],
             dv_km_s: dv,
             impulsive_dv_km_s: dv,
             cost_km_s: dv + policy.per_start_km_s * (N - 1) as f64,
             dv_with_margin_km_s: dv * (1.0 + policy.margin),
             duration_s: self.coast_s,
             starts: N,
-            captured_share: captured_share(self.steps[0], angles[0], self.v_inf_sq),
             consumption: None,
         };
         if let Some(vehicle) = &setting.vehicle {
@@ -463,7 +466,7 @@ impl<const N: usize> Path<N> {
         let captured_after_s =
             setting
                 .vehicle
-                .zip(figures.captured_share)
+                .zip(figures.captured_share())
                 .map(|(vehicle, share)| {
                     let spent = share * self.steps[0].dv_km_s(angles[0]);
                     vehicle.burn_time_s(vehicle.propellant_for_kg(vehicle.start_mass_kg(), spent))
@@ -471,7 +474,7 @@ impl<const N: usize> Path<N> {
         Ok(Plan {
             way: self.way,
             burns,
-            v_inf_km_s: figures.v_inf_km_s,
+            v_inf_km_s: figures.v_inf_sq.sqrt(),
             turn_rad: self.turn,
             dv_km_s: figures.dv_km_s,
             impulsive_dv_km_s: figures.impulsive_dv_km_s,
@@ -485,7 +488,7 @@ impl<const N: usize> Path<N> {
                 self.v_inf_sq,
                 self.brake_radius_km,
             ),
-            captured_share: figures.captured_share,
+            captured_share: figures.captured_share(),
             captured_after_s,
             consumption: figures.consumption,
         })
@@ -520,6 +523,11 @@ fn consume(
 }
 
 impl Figures {
+    /// Share of the first burn's own Δv after which the spacecraft is captured. Computed when asked for: searches do not.
+    pub fn captured_share(&self) -> Option<f64> {
+        captured_share(self.first_step, self.first_turn, self.v_inf_sq)
+    }
+
     /// Holds times, starts and masses against the limits.
     #[inline]
     fn hold_to_limits(&self, setting: &Setting) -> Result<(), NotFlyable> {

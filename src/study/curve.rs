@@ -39,7 +39,7 @@ impl From<&Figures> for Sample {
             duration_s: figures.duration_s,
             starts: figures.starts,
             longest_burn_s: figures.consumption.map(|used| used.longest_burn_s),
-            captured_share: figures.captured_share,
+            captured_share: figures.captured_share(),
         }
     }
 }
