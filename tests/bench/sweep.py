@@ -1,7 +1,7 @@
 #!/usr/bin/env python3
 """The sweep of `curve_240_and_landmarks` in numpy, for comparison: 240 target radii, direct, dip and loop, with the split of
 a plane change found on a grid (two burns) and by coordinate refinement (three burns), the cheapest direct radius and the
-crossovers. Prints the median time of one sweep. Run beside `cargo bench`."""
+crossovers, refined as the program refines them. Prints the median time of one sweep. Run beside `cargo bench`."""
 
 import statistics
 import sys
@@ -52,13 +52,45 @@ def costs(r, turn):
     return direct, best_dip, value.min((0, 1))
 
 
+def bisected(turn, pair, low, high):
+    gap = lambda r: (lambda c: c[pair[0]][0] - c[pair[1]][0])(costs(np.array([r]), turn))
+    start = gap(low) < 0
+    for _ in range(50):
+        middle = 0.5 * (low + high)
+        if (gap(middle) < 0) == start:
+            low = middle
+        else:
+            high = middle
+    return 0.5 * (low + high)
+
+
+def golden(turn, low, high):
+    cost = lambda r: costs(np.array([r]), turn)[0][0]
+    ratio = 0.5 * (np.sqrt(5) - 1)
+    c, d = high - ratio * (high - low), low + ratio * (high - low)
+    fc, fd = cost(c), cost(d)
+    for _ in range(35):  # to the square root of the rounding error, as far as comparing values goes
+        if fc < fd:
+            high, d, fd = d, c, fc
+            c = high - ratio * (high - low)
+            fc = cost(c)
+        else:
+            low, c, fc = c, d, fd
+            d = low + ratio * (high - low)
+            fd = cost(d)
+    return 0.5 * (low + high)
+
+
 def sweep(turn):
+    """The 240 costs of each way, the cheapest direct radius and every crossover, refined."""
     r = np.geomspace(Q + 1, LOOP, 240)
     direct, dip, loop = costs(r, turn)
     winner = np.argmin([direct, dip, loop], axis=0)
-    changes = np.flatnonzero(np.diff(winner))
-    cheapest = r[direct.argmin()]
-    return cheapest, r[changes]
+    crossovers = [
+        bisected(turn, (winner[k], winner[k + 1]), r[k], r[k + 1]) for k in np.flatnonzero(np.diff(winner))
+    ]
+    k = int(np.clip(direct.argmin(), 1, 238))
+    return golden(turn, r[k - 1], r[k + 1]), crossovers
 
 
 for turn in (0.0, np.radians(28.5)):
