@@ -3,7 +3,10 @@
 //! Burns: at q v_h(q) − v_p(q, A); at A v_a(p, A) − v_a(q, A). Coast: half the period of (q, A).
 
 use super::setting::{Choice, NoPassage, Setting};
-use super::way::{NotFlyable, Objections, Path, Reason, Way, brake_step, log_grid, raise_step};
+use super::way::{
+    MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step, log_grid,
+    raise_step,
+};
 use crate::numerics::minimum;
 use crate::physics::conic::{self, Orbit};
 
@@ -62,13 +65,9 @@ fn path(setting: &Setting, q: f64) -> Result<Path<2>, NoPassage> {
     })
 }
 
-/// Nodes of the search for the brake radius; the cost has at most one valley between floor and target in every
-/// case tried, and the nodes only have to bracket it.
-const BRAKE_NODES: usize = 6;
-
 fn best(setting: &Setting) -> Result<Path<2>, NotFlyable> {
     let (low, high) = (setting.limits.floor_radius_km, setting.target.periapsis_km);
-    let grid = log_grid::<BRAKE_NODES>(low, high, BRAKE_NODES);
+    let grid = log_grid::<MOST_BRAKE_NODES>(low, high, brake_nodes(setting));
     // Limits that depend on the radius (time, propellant) count as walls, so the whole figures are asked for only where
     // the bare cost has been found; an optimum that breaks a limit falls back to the search within them.
     let bare =

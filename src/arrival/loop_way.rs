@@ -5,7 +5,8 @@
 
 use super::setting::{Choice, NoPassage, Setting};
 use super::way::{
-    NotFlyable, Objections, Path, Reason, Way, brake_step, log_grid, lower_step, raise_step,
+    MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step, log_grid,
+    lower_step, raise_step,
 };
 use crate::numerics::{minimum, root};
 use crate::physics::conic::{self, Orbit};
@@ -94,7 +95,6 @@ fn bare(setting: &Setting, q: f64, apoapsis: f64) -> Option<f64> {
 /// Nodes of the search over the loop's apoapsis. Nearly always the highest allowed is cheapest; the nodes bracket the
 /// valley that a large plane change can make.
 const APOAPSIS_NODES: usize = 5;
-const BRAKE_NODES: usize = 6;
 
 /// The highest loop apoapsis that cap and time allow with brake radius q; the target's apoapsis if none.
 ///
@@ -152,7 +152,7 @@ fn best_apoapsis(setting: &Setting, q: f64) -> f64 {
 
 fn best_brake(setting: &Setting, apoapsis: f64) -> f64 {
     let (low, high) = (setting.limits.floor_radius_km, setting.target.periapsis_km);
-    let grid = log_grid::<BRAKE_NODES>(low, high, BRAKE_NODES);
+    let grid = log_grid::<MOST_BRAKE_NODES>(low, high, brake_nodes(setting));
     minimum::scan_then_refine(|q| bare(setting, q, apoapsis), &grid).map_or(low, |found| found.x)
 }
 

@@ -1,6 +1,6 @@
 //! What every way has in common: its name, the plan it returns, the reasons why it cannot be flown.
 
-use super::setting::{NoPassage, Policy, Setting};
+use super::setting::{NoPassage, PlaneDemand, Policy, Setting};
 use super::{dip, direct, loop_way};
 use crate::physics::burn::{SpeedStep, captured_share, split_turn};
 use crate::physics::conic::{self, Orbit};
@@ -600,6 +600,18 @@ pub(super) fn lower_step(gm: f64, p: f64, from: f64, to: f64) -> SpeedStep {
         before,
         after,
         difference: squares / (before + after),
+    }
+}
+
+/// Most nodes of a search for the brake radius.
+pub(super) const MOST_BRAKE_NODES: usize = 16;
+
+/// Nodes of a search for the brake radius. The cost has one valley between floor and target, and the nodes only have to
+/// bracket it; but where the turn depends on the brake there can be a second one at the target itself, and more are needed.
+pub(super) fn brake_nodes(setting: &Setting) -> usize {
+    match setting.plane {
+        PlaneDemand::Free | PlaneDemand::Turn(_) => 6,
+        PlaneDemand::Missing(_) => MOST_BRAKE_NODES,
     }
 }
 

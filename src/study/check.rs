@@ -291,6 +291,7 @@ fn tie_checks(setting: &Setting, checks: &mut Vec<Check>) {
     let break_even = 2.0 * setting.gm / v_inf_sq;
     let mut ideal = setting.with_target(break_even, break_even);
     ideal.approach = Approach::Given(v_inf_sq);
+    ideal.remembered = None;
     ideal.plane = PlaneDemand::Free;
     ideal.vehicle = None;
     ideal.policy.per_start_km_s = 0.0;

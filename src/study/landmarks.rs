@@ -5,6 +5,7 @@
 
 use super::answer::cheapest;
 use crate::arrival::{Choice, Setting, Way};
+use crate::numerics::tolerance::SAME_COST_RELATIVE;
 use crate::numerics::{minimum, root};
 
 /// Cheapest altitude and crossovers.
@@ -168,12 +169,16 @@ fn cheapest_direct(setting: &Setting, grid: &[f64], nodes: &[Node]) -> Option<Ch
     let cost = |radius: f64| cost_at(setting, Way::Direct, radius);
     let found = minimum::scan_then_refine(|radius| known().unwrap_or_else(|| cost(radius)), grid)?;
     let sharp = minimum::stationary_point(cost, found.x);
+    // Close to a bound the stencil of the sharp search does not fit; the minimum may be inside all the same.
+    let interior = [1.0 - 1e-4, 1.0 + 1e-4]
+        .iter()
+        .all(|side| cost(found.x * side).is_some_and(|value| found.value <= value));
     let radius_km = sharp.unwrap_or(found.x);
     let plan = Way::Direct.plan(&at_radius(setting, radius_km)).ok()?;
     Some(Cheapest {
         radius_km,
         dv_km_s: plan.dv_km_s,
-        at_border: sharp.is_none(),
+        at_border: sharp.is_none() && !interior,
     })
 }
 
@@ -193,7 +198,11 @@ fn crossovers(setting: &Setting, nodes: &[Node]) -> Vec<Crossover> {
         Choice::Radius(brake) => brake,
         Choice::Best => setting.limits.floor_radius_km,
     };
-    found.retain(|crossover: &Crossover| brake * (1.0 + 2e-6) < crossover.radius_km);
+    // The same at the top: where the target's apoapsis meets the cap, a loop up to the cap is a dip.
+    let top = nodes.last().map_or(f64::INFINITY, |node| node.radius);
+    found.retain(|crossover: &Crossover| {
+        brake * (1.0 + 2e-6) < crossover.radius_km && crossover.radius_km < top * (1.0 - 2e-6)
+    });
     found
 }
 
@@ -207,19 +216,19 @@ fn between(setting: &Setting, left: &Node, right: &Node, depth: u32, found: &mut
     if below == above {
         return;
     }
-    let tie = match (
-        left.cost(below),
-        left.cost(above),
-        right.cost(below),
-        right.cost(above),
-    ) {
-        (Some(_), Some(_), Some(_), Some(_)) => {
-            let difference = |radius: f64| {
-                Some(cost_at(setting, below, radius)? - cost_at(setting, above, radius)?)
-            };
-            root::bracketed(difference, left.radius, right.radius).ok()
-        }
-        _ => None,
+    let both = [left, right].map(|node| node.cost(below).zip(node.cost(above)));
+    let both_flyable = both.iter().all(Option::is_some);
+    // With the brake left open, dip below the crossover brakes at the target itself and costs exactly what direct does: the
+    // difference is then zero over a stretch and its root means nothing.
+    let apart = both
+        .iter()
+        .all(|pair| pair.is_some_and(|(a, b)| SAME_COST_RELATIVE * a.max(b) < (a - b).abs()));
+    let tie = if apart {
+        let difference =
+            |radius: f64| Some(cost_at(setting, below, radius)? - cost_at(setting, above, radius)?);
+        root::bracketed(difference, left.radius, right.radius).ok()
+    } else {
+        None
     };
     let (radius, kind) = match tie {
         Some(radius) => (radius, CrossoverKind::Tie),
@@ -229,7 +238,12 @@ fn between(setting: &Setting, left: &Node, right: &Node, depth: u32, found: &mut
                 left.radius,
                 right.radius,
             );
-            (right_side, CrossoverKind::Limit)
+            let kind = if both_flyable {
+                CrossoverKind::Tie
+            } else {
+                CrossoverKind::Limit
+            };
+            (right_side, kind)
         }
     };
     let middle = Node::ask(setting, radius);

@@ -248,6 +248,7 @@ fn without(setting: &Setting, cause: Cause) -> Option<Setting> {
         Cause::TimeLimit => other.limits.longest_s = f64::INFINITY,
         Cause::StartLimit => other.limits.most_starts = crate::arrival::way::MOST_BURNS,
         Cause::SpeedVaries => {
+            other.remembered = None;
             other.approach = Approach::Given(
                 setting
                     .approach

@@ -260,3 +260,27 @@ fn aiming_conserves_momentum() {
         1e-14,
     );
 }
+
+#[test]
+fn the_crossover_is_where_the_ways_tie_also_with_the_brake_left_open() {
+    for cap in [60_000.0, 100_000.0, 1e6] {
+        let mut setting = open_setting(GM, V_INF, 2000.0, 2000.0);
+        setting.brake = Choice::Best;
+        setting.limits.floor_radius_km = 1837.4;
+        setting.limits.cap_radius_km = cap;
+        setting.limits.most_starts = 2;
+        let marks = landmarks::landmarks(&setting);
+        assert_eq!(marks.crossovers.len(), 1, "{cap}");
+        agree(marks.crossovers[0].radius_km, break_even(), 1e-9);
+    }
+}
+
+#[test]
+fn the_cheapest_altitude_just_above_the_floor_is_not_taken_for_held_by_it() {
+    let mut setting = open_setting(GM, V_INF, 20_000.0, 20_000.0);
+    setting.limits.floor_radius_km = break_even() / 1.01;
+    setting.limits.cap_radius_km = 1e6;
+    let found = landmarks::landmarks(&setting).cheapest.expect("flyable");
+    assert!(!found.at_border);
+    agree(found.radius_km, break_even(), 1e-6);
+}
