@@ -30,17 +30,50 @@ pub(super) fn solve(setting: &Setting) -> Result<Path<3>, NotFlyable> {
         }
     }
     objections.none()?;
-    match (setting.brake, setting.loop_apoapsis) {
-        (Choice::Radius(q), Choice::Radius(apoapsis)) => at(setting, q, apoapsis),
-        (Choice::Radius(q), Choice::Best) => at(setting, q, best_apoapsis(setting, q)),
-        (Choice::Best, Choice::Radius(apoapsis)) => {
-            at(setting, best_brake(setting, apoapsis), apoapsis)
-        }
-        (Choice::Best, Choice::Best) => {
-            let (q, apoapsis) = best_pair(setting);
-            at(setting, q, apoapsis)
-        }
+    let (q, apoapsis) = match (setting.brake, setting.loop_apoapsis) {
+        (Choice::Radius(q), Choice::Radius(apoapsis)) => return at(setting, q, apoapsis),
+        (Choice::Radius(q), Choice::Best) => (q, best_apoapsis(setting, q)),
+        (Choice::Best, Choice::Radius(apoapsis)) => (best_brake(setting, apoapsis), apoapsis),
+        (Choice::Best, Choice::Best) => best_pair(setting),
+    };
+    let free = at(setting, q, apoapsis)?;
+    let another_may_fit = free.figures(setting).is_err_and(|not| {
+        not.reasons
+            .iter()
+            .all(|reason| matches!(reason, Reason::TooLong { .. } | Reason::BurnTooLong { .. }))
+    });
+    match another_may_fit.then(|| within_limits(setting)).flatten() {
+        Some((q, apoapsis)) => at(setting, q, apoapsis),
+        None => Ok(free),
     }
+}
+
+/// The cheapest pair that keeps every limit, where the free optimum breaks the time or the burn limit: a grid over what is left open,
+/// then one refinement of each, with the whole figures as walls. `None` where no node fits.
+fn within_limits(setting: &Setting) -> Option<(f64, f64)> {
+    const NODES: usize = 12;
+    let (floor, p) = (setting.limits.floor_radius_km, setting.target.periapsis_km);
+    let (a, cap) = (setting.target.apoapsis_km, setting.limits.cap_radius_km);
+    let open = |choice: Choice, low: f64, high: f64| match choice {
+        Choice::Radius(radius) => log_grid::<NODES>(radius, radius, NODES),
+        Choice::Best => log_grid::<NODES>(low, high, NODES),
+    };
+    let brakes = open(setting.brake, floor, p);
+    let apoapses = open(setting.loop_apoapsis, a, cap);
+    let cost = |q: f64, apoapsis: f64| {
+        at(setting, q, apoapsis)
+            .and_then(|path| path.figures(setting))
+            .ok()
+            .map(|figures| figures.cost_km_s)
+    };
+    let along = |q: f64| minimum::scan_then_refine(|apoapsis| cost(q, apoapsis), &apoapses);
+    let (q, found) = brakes
+        .iter()
+        .filter_map(|&q| along(q).map(|found| (q, found)))
+        .min_by(|x, y| x.1.value.total_cmp(&y.1.value))?;
+    let lower = minimum::scan_then_refine(|q| cost(q, found.x), &brakes)
+        .filter(|lower| lower.value < found.value);
+    Some((lower.map_or(q, |lower| lower.x), found.x))
 }
 
 fn at(setting: &Setting, q: f64, apoapsis: f64) -> Result<Path<3>, NotFlyable> {

@@ -499,3 +499,17 @@ fn an_unchanged_scenario_is_saved_byte_for_byte() {
         .case;
     assert_eq!(write::patch(template, case.spec()), template);
 }
+
+#[test]
+fn best_keeps_a_burn_limit_where_a_fixed_choice_can() {
+    // Moon, circle at 100 km: the free optimum's longest burn is 1927 s.
+    let text = "(format: 1, body: Known(\"Moon\"), arrival: Asymptote(v_inf_km_s: 0.85), \
+        target: (shape: Circular(altitude_km: 100.0)), limits: (floor_alt_km: 60.0, longest_burn_s: 1500.0), \
+        vehicle: (dry_mass_kg: 150.0, propellant_kg: 120.0, thrust_n: 66.0, isp_s: 220.0))";
+    let case = file::parse("limit", text).expect("sound").case;
+    let found = Way::Loop
+        .plan(case.setting())
+        .expect("a loop fits the limit");
+    assert!(found.consumption.expect("a vehicle").longest_burn_s <= 1500.0);
+    assert!(found.dv_km_s < 0.8288, "{}", found.dv_km_s);
+}
