@@ -3,7 +3,7 @@
 use divan::{Bencher, black_box};
 use stoop::arrival::{Choice, Limits, PlaneDemand, Policy, Setting, Way};
 use stoop::physics::conic::Orbit;
-use stoop::physics::transfer::Approach;
+use stoop::physics::transfer::{self, Approach, ParentTransfer, TransferInput};
 use stoop::report::plot::Glyphs;
 use stoop::scenario::file;
 use stoop::study::curve::{self, Axis};
@@ -131,8 +131,78 @@ mod arc {
     }
 }
 
+/// One arrival from an orbit round the parent, Earth to Moon from 400 km.
+mod approach {
+    use super::*;
+    use transfer::Model;
+
+    fn input(model: Model) -> TransferInput {
+        TransferInput {
+            parent_gm: 398_600.4418,
+            body_gm: 4902.8,
+            distance_km: 384_400.0,
+            departure_radius_km: 6778.137,
+            apoapsis_km: 384_400.0,
+            model,
+            cos_inclination: 1.0,
+        }
+    }
+
+    #[divan::bench(sample_size = 1000)]
+    fn three_body_v_inf(bencher: Bencher) {
+        let transfer = ParentTransfer::new(input(Model::ThreeBody));
+        bencher.bench_local(|| black_box(&transfer).v_inf_sq(black_box(6737.4)));
+    }
+
+    #[divan::bench(sample_size = 1000)]
+    fn direct_by_three_body(bencher: Bencher) {
+        let setting = Setting {
+            approach: Approach::FromParent(ParentTransfer::new(input(Model::ThreeBody))),
+            ..setting(0.0)
+        };
+        bencher.bench_local(|| Way::Direct.figures(black_box(&setting)));
+    }
+
+    #[divan::bench]
+    fn patched_v_inf(bencher: Bencher) {
+        let transfer = ParentTransfer::new(input(Model::Patched));
+        bencher.bench_local(|| black_box(&transfer).v_inf_sq(black_box(6737.4)));
+    }
+
+    #[divan::bench]
+    fn three_body_transfer_new(bencher: Bencher) {
+        let input = input(Model::ThreeBody);
+        bencher.bench_local(|| ParentTransfer::new(black_box(input)));
+    }
+}
+
 mod study {
     use super::*;
+
+    #[divan::bench]
+    fn case_new_given(bencher: Bencher) {
+        let spec = case(0.0, true).spec().clone();
+        bencher.bench_local(|| Case::new(black_box(spec.clone())));
+    }
+
+    #[divan::bench]
+    fn case_new_from_parent(bencher: Bencher) {
+        let spec = file::built_in().case.spec().clone();
+        bencher.bench_local(|| Case::new(black_box(spec.clone())));
+    }
+
+    #[divan::bench]
+    fn landmarks_alone(bencher: Bencher) {
+        let case = case(28.5, false);
+        bencher.bench_local(|| landmarks::landmarks(black_box(case.setting())));
+    }
+
+    #[divan::bench]
+    fn verdict_alone(bencher: Bencher) {
+        let case = file::built_in().case;
+        let answer = Answer::of(&case);
+        bencher.bench_local(|| verdict::verdict(black_box(case.setting()), black_box(&answer)));
+    }
 
     /// 240 target altitudes, all three ways, and all landmarks.
     fn curve_and_landmarks(case: &Case) -> usize {
@@ -163,6 +233,15 @@ mod study {
     fn curve_240_and_landmarks(bencher: Bencher, turn: f64) {
         let case = case(turn, false);
         bencher.bench_local(|| curve_and_landmarks(black_box(&case)));
+    }
+
+    /// The work of `sweep.py`: costs only, no landmarks.
+    #[divan::bench(args = TURNS)]
+    fn curve_240(bencher: Bencher, turn: f64) {
+        let case = case(turn, false);
+        let axis =
+            Axis::new(by_id(KnobId::TargetAltitude), 100.0, 24_000.0, 240, true).expect("an axis");
+        bencher.bench_local(|| curve::curve(black_box(&case), &axis));
     }
 
     #[divan::bench(args = TURNS)]

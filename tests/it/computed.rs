@@ -7,7 +7,7 @@ use serde_json::Value;
 use stoop::arrival::{Choice, Plan, PlaneDemand, Setting, Way};
 use stoop::physics::conic;
 use stoop::physics::transfer::{Model, ParentTransfer, TransferInput};
-use stoop::study::landmarks;
+use stoop::study::landmarks::{self, CrossoverKind};
 
 fn cases(group: &str) -> Vec<Value> {
     let all: Value =
@@ -98,8 +98,14 @@ fn costs_of_the_three_ways() {
                     list(&case, "v_after")[k],
                     tolerance,
                 );
-                // A single burn's share is first order in the split, which is held to 1e-7 degrees below.
-                close(&case, "burn", burn.dv_km_s, list(&case, "burns")[k], 1e-9);
+                // Coplanar burns are held to the full tolerance. With a split the total is stationary but a single burn's share
+                // is first order in the angles, which are held to 1e-7 degrees (1.7e-9 rad) below.
+                let share = if get(&case, "inputs", "inc_deg") == 0.0 {
+                    tolerance
+                } else {
+                    1e-9
+                };
+                close(&case, "burn", burn.dv_km_s, list(&case, "burns")[k], share);
                 let angle = list(&case, "angles_deg")[k];
                 assert!(
                     (burn.turn_rad.to_degrees() - angle).abs() < 1e-7,
@@ -197,8 +203,12 @@ fn every_crossover_and_no_other() {
             setting.plane = PlaneDemand::Turn(input("inc_deg").to_radians());
         }
         let expected = list(&case, "roots");
-        let found: Vec<f64> = landmarks::landmarks(&setting)
-            .crossovers
+        let crossovers = landmarks::landmarks(&setting).crossovers;
+        for crossover in &crossovers {
+            assert_eq!(crossover.kind, CrossoverKind::Tie, "{}", case["id"]);
+            assert!(crossover.below != crossover.above, "{}", case["id"]);
+        }
+        let found: Vec<f64> = crossovers
             .iter()
             .map(|crossover| crossover.radius_km)
             .collect();
@@ -318,52 +328,71 @@ fn the_patched_conic() {
             output("tof_moon"),
             tolerance,
         );
+        let speed = conic::hyperbola_speed_km_s(get(&case, "inputs", "muM"), patch.v_inf_sq, q);
+        close(&case, "speed", speed, output("v_peri"), tolerance);
+        let flight = transfer(&case, Model::Patched)
+            .time_of_flight_s(q)
+            .expect("a passage");
+        close(&case, "time of flight", flight, output("tof"), tolerance);
     }
 }
 
 #[test]
 fn the_three_body_energy() {
     for case in cases("three-body energy") {
-        let found =
-            transfer(&case, Model::ThreeBody).three_body_v_inf_sq(get(&case, "inputs", "q"));
+        let tolerance = case["rel_tol"].as_f64().expect("a tolerance");
+        let q = get(&case, "inputs", "q");
+        let output = |name: &str| get(&case, "outputs", name);
+        let transfer = transfer(&case, Model::ThreeBody);
+        let found = transfer.three_body_v_inf_sq(q);
+        close(&case, "v_inf^2", found, output("vinf_eff_sq"), tolerance);
+        // The model in use is the closed form, once the passage is known to be in reach.
+        assert_eq!(transfer.v_inf_sq(q), Ok(found), "{}", case["id"]);
+        let speed = conic::hyperbola_speed_km_s(get(&case, "inputs", "muM"), found, q);
+        close(&case, "speed", speed, output("v_peri"), tolerance);
+        let (gm, r0) = (get(&case, "inputs", "muE"), get(&case, "inputs", "r0"));
+        let departure = output("v0") - (gm / r0).sqrt();
         close(
             &case,
-            "v_inf^2",
-            found,
-            get(&case, "outputs", "vinf_eff_sq"),
-            1e-12,
+            "departure",
+            transfer.departure_dv_km_s(),
+            departure,
+            tolerance,
         );
     }
 }
 
 #[test]
 fn the_three_body_energy_against_integrated_arrivals() {
-    let mut worst = 0.0_f64;
-    for case in cases("integrated three-body") {
-        let q = get(&case, "inputs", "q");
-        let transfer = transfer(&case, Model::ThreeBody);
+    // The closed form takes the departure as an unperturbed two-body ellipse; what that costs grows with the periapsis and with
+    // the apoapsis of the transfer. Differences in periapsis speed found, m/s, by reference case (stated in docs/accuracy.md):
+    let found_m_s = [
+        ("threebody-384400-100-1-0", 0.003),
+        ("threebody-384400-5000-1-0", 0.028),
+        ("threebody-400000-500-1-0", 0.006),
+        ("threebody-400000-100--1-0", 0.006),
+        ("threebody-450000-2000--1-0", 0.052),
+    ];
+    let cases = cases("integrated three-body");
+    assert_eq!(cases.len(), found_m_s.len());
+    for (case, (id, bound)) in cases.iter().zip(found_m_s) {
+        assert_eq!(case["id"], id);
+        let q = get(case, "inputs", "q");
+        let transfer = transfer(case, Model::ThreeBody);
         let v_inf_sq = transfer.v_inf_sq(q).expect("reached");
-        let speed = conic::hyperbola_speed_km_s(4902.8, v_inf_sq, q);
-        let difference = (speed - get(&case, "outputs", "v_peri")).abs();
-        worst = worst.max(difference);
-        // The closed form takes the departure as unperturbed two-body; 2-physics section 3 states 0.2 m/s.
-        assert!(difference < 2e-4, "{}: {difference:e} km/s", case["id"]);
+        let speed = conic::hyperbola_speed_km_s(get(case, "inputs", "muM"), v_inf_sq, q);
+        let difference = 1e3 * (speed - get(case, "outputs", "v_peri")).abs();
+        assert!(difference < bound, "{id}: {difference} m/s");
         close(
-            &case,
+            case,
             "departure",
             transfer.departure_dv_km_s(),
-            get(&case, "outputs", "dv_depart"),
-            1e-8,
+            get(case, "outputs", "dv_depart"),
+            case["rel_tol"].as_f64().expect("a tolerance"),
         );
-        // The clock is a patched conic's: a few percent.
-        let flight = transfer.time_of_flight_s(q).expect("reached");
-        close(
-            &case,
-            "time of flight",
-            flight,
-            get(&case, "outputs", "t_peri"),
-            0.04,
-        );
+        // The clock is the patched conic's: always late, by 1.0 to 1.7 % in these five.
+        let late =
+            transfer.time_of_flight_s(q).expect("reached") / get(case, "outputs", "t_peri") - 1.0;
+        assert!((0.0..0.018).contains(&late), "{id}: {late}");
     }
-    assert!(0.0 < worst);
 }
