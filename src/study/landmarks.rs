@@ -187,9 +187,26 @@ fn crossovers(setting: &Setting, nodes: &[Node]) -> Vec<Crossover> {
     for (k, pair) in nodes.windows(2).enumerate() {
         let (left, right) = (&pair[0], &pair[1]);
         match (left.best, right.best) {
-            (Some(a), Some(b)) if a == b => touch(setting, nodes, k, a, &mut found),
+            (Some(a), Some(b)) if a == b => {
+                if !ends_within(setting, left, right, a, &mut found) {
+                    touch(setting, nodes, k, a, &mut found);
+                }
+            }
             (Some(_), Some(_)) => between(setting, left, right, 0, &mut found),
-            _ => {}
+            // Nothing is flyable at one end: the last place where something is takes its part.
+            (Some(_), None) | (None, Some(_)) => {
+                let (near, far) = root::border(
+                    |radius| Node::ask(setting, radius).best.is_some(),
+                    left.radius,
+                    right.radius,
+                );
+                if left.best.is_some() {
+                    between(setting, left, &Node::ask(setting, near), 0, &mut found);
+                } else {
+                    between(setting, &Node::ask(setting, far), right, 0, &mut found);
+                }
+            }
+            (None, None) => {}
         }
     }
     // Where dip and loop begin, at the brake radius (the floor, where the program chooses it), the change is not a
@@ -276,6 +293,35 @@ fn between(setting: &Setting, left: &Node, right: &Node, depth: u32, found: &mut
             kind,
         });
     }
+}
+
+/// Two crossovers inside one cell whose ends have the same winner, because a limit takes the cheaper way out (or lets it in) right after
+/// it has become the cheaper. Looks where the flyability of a way changes; `false` where that hides nothing.
+fn ends_within(
+    setting: &Setting,
+    left: &Node,
+    right: &Node,
+    winner: Way,
+    found: &mut Vec<Crossover>,
+) -> bool {
+    for entry in Way::TABLE.iter().filter(|entry| entry.way != winner) {
+        let flyable = |node: &Node| node.cost(entry.way).is_some();
+        if flyable(left) == flyable(right) {
+            continue;
+        }
+        let (near, far) = root::border(
+            |radius| cost_at(setting, entry.way, radius).is_some(),
+            left.radius,
+            right.radius,
+        );
+        let inside = Node::ask(setting, if flyable(left) { near } else { far });
+        if inside.best.is_some_and(|best| best != winner) {
+            between(setting, left, &inside, 0, found);
+            between(setting, &inside, right, 0, found);
+            return true;
+        }
+    }
+    false
 }
 
 /// Two crossovers inside one cell: the winner is the same at both ends, but another way comes close enough between

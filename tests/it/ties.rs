@@ -579,3 +579,27 @@ fn aiming_conserves_momentum() {
         1e-14,
     );
 }
+
+/// Dip becomes the cheapest way and meets the time limit within one cell of the scan: both changes are reported.
+#[test]
+fn a_crossover_and_the_limit_right_after_it_are_both_seen() {
+    let mut setting = open_setting(1.0, 3.293e-5_f64.sqrt(), 1966.17, 24_907.04);
+    setting.brake = Choice::Radius(1005.0);
+    setting.loop_apoapsis = Choice::Best;
+    setting.limits.floor_radius_km = 1005.0;
+    setting.limits.cap_radius_km = 4_981_408.0;
+    setting.limits.longest_s = 24_023_197.8;
+    setting.limits.most_starts = 2;
+    setting.policy.per_start_km_s = 9.7568e-5;
+    let found = landmarks::landmarks(&setting).crossovers;
+    let ways: Vec<_> = found
+        .iter()
+        .map(|crossover| (crossover.below, crossover.above))
+        .collect();
+    assert_eq!(
+        ways,
+        [(Way::Direct, Way::Dip), (Way::Dip, Way::Direct)],
+        "{found:?}"
+    );
+    assert!((found[0].radius_km - 5969.0).abs() < 5.0, "{found:?}");
+}
