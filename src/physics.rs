@@ -9,6 +9,7 @@ pub mod body;
 pub mod burn;
 pub mod catalogue;
 pub mod conic;
+pub mod held_burn;
 pub mod pole;
 pub mod thrust_arc;
 pub mod transfer;

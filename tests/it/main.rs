@@ -4,6 +4,7 @@ mod arcs;
 mod bad;
 mod cli;
 mod computed;
+mod held;
 mod properties;
 mod published;
 mod scenarios;

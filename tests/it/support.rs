@@ -43,3 +43,29 @@ pub(crate) fn agree(found: f64, expected: f64, tolerance: f64) {
         "{found} expected {expected}: {difference:e} > {tolerance:e}"
     );
 }
+
+/// The cases of one group of the reference collection (computed with mpmath and scipy, outside this project).
+pub(crate) fn reference_group(group: &str) -> Vec<serde_json::Value> {
+    let all: serde_json::Value =
+        serde_json::from_str(include_str!("../data/computed.json")).expect("sound JSON");
+    all["cases"]
+        .as_array()
+        .expect("cases")
+        .iter()
+        .filter(|case| case["group"] == group)
+        .cloned()
+        .collect()
+}
+
+/// One case of the reference collection.
+pub(crate) fn reference(id: &str) -> serde_json::Value {
+    let all: serde_json::Value =
+        serde_json::from_str(include_str!("../data/computed.json")).expect("sound JSON");
+    all["cases"]
+        .as_array()
+        .expect("cases")
+        .iter()
+        .find(|case| case["id"] == id)
+        .cloned()
+        .expect("the case")
+}
