@@ -4,9 +4,12 @@
 
 mod dip;
 mod direct;
+mod guide;
+mod lasting;
 mod loop_way;
 pub mod setting;
+mod steps;
 pub mod way;
 
-pub use setting::{Choice, Limits, PlaneDemand, Policy, Setting};
-pub use way::{Burn, Figures, NotFlyable, Plan, Reason, Way};
+pub use setting::{Burns, Choice, Limits, Passes, PlaneDemand, Policy, Setting};
+pub use way::{Before, Burn, Figures, Flown, NotFlyable, Plan, Reason, Way};

@@ -7,5 +7,6 @@ pub mod lists;
 pub mod plot;
 mod rerun;
 pub mod sources;
+pub mod stops;
 pub mod sweep;
 pub mod words;

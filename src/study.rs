@@ -4,6 +4,7 @@ pub mod answer;
 pub mod case;
 pub mod check;
 pub mod curve;
+pub mod engine;
 pub mod entry;
 pub mod field;
 pub mod knob;
@@ -11,6 +12,7 @@ pub mod landmarks;
 pub mod spec;
 pub mod verdict;
 pub mod warning;
+pub mod watch;
 
 pub use answer::Answer;
 pub use case::Case;

@@ -7,11 +7,13 @@ pub mod action;
 pub mod keymap;
 pub mod layout;
 pub mod model;
+pub mod results;
 mod signals;
 mod terminal;
 pub mod theme;
 pub mod update;
 pub mod view;
+pub mod worker;
 
 use crate::report::plot::Glyphs;
 use crate::scenario::file::{self, Loaded};
@@ -22,6 +24,7 @@ use std::path::PathBuf;
 use std::sync::mpsc::{Receiver, Sender, channel};
 use theme::Theme;
 use update::{Effect, Msg, Written, update};
+use worker::Worker;
 
 /// How the explorer is started.
 #[derive(Clone, Debug)]
@@ -40,6 +43,8 @@ enum Event {
     Signal(signals::Signal),
     /// The terminal is gone.
     InputEnded(String),
+    /// From the worker.
+    Worker(worker::Report),
 }
 
 /// Runs the explorer until it is left; returns the exit code.
@@ -52,8 +57,11 @@ pub fn run(loaded: Loaded, path: Option<PathBuf>, options: &Options) -> anyhow::
     let (sender, events) = channel();
     signals::watch(sender.clone()).context("signals cannot be watched")?;
     let mut screen = terminal::enter().context("the terminal cannot be set up")?;
+    let reports = sender.clone();
+    let mut worker = Worker::start(move |report| reports.send(Event::Worker(report)).is_ok());
     watch_input(sender);
-    let result = explore(&mut model, &events, &mut screen, options.theme);
+    let result = explore(&mut model, &events, &mut screen, &mut worker, options.theme);
+    worker.stop();
     terminal::restore();
     result
 }
@@ -62,9 +70,13 @@ fn explore(
     model: &mut Model,
     events: &Receiver<Event>,
     screen: &mut terminal::Screen,
+    worker: &mut Worker,
     theme: Theme,
 ) -> anyhow::Result<u8> {
     loop {
+        if let Some(job) = model.wanted.take() {
+            worker.ask(job);
+        }
         screen
             .draw(|frame| view::view(model, theme, frame))
             .context("the terminal cannot be written to")?;
@@ -73,6 +85,9 @@ fn explore(
         while let Some(event) = next {
             match event {
                 Event::Signal(signals::Signal::End(code)) => return Ok(code),
+                Event::Worker(report) => {
+                    update(model, Msg::Reported(report));
+                }
                 Event::InputEnded(why) => anyhow::bail!("the terminal cannot be read: {why}"),
                 Event::Signal(signals::Signal::Stop) => {
                     if let Some(code) = carry_out(model, screen, vec![Effect::Suspend])? {
@@ -87,6 +102,10 @@ fn explore(
                 Event::Terminal(event) => {
                     if let Some(msg) = message(event) {
                         let effects = update(model, msg);
+                        // What ran for the state before is of no use, and the cores are wanted for the next frame.
+                        if model.wanted.is_some() || model.working.is_none() {
+                            worker.stop();
+                        }
                         if let Some(code) = carry_out(model, screen, effects)? {
                             return Ok(code);
                         }

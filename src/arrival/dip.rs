@@ -4,8 +4,8 @@
 
 use super::setting::{Choice, NoPassage, Setting};
 use super::way::{
-    MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step, log_grid,
-    raise_step,
+    Apsis, MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step,
+    log_grid, raise_step,
 };
 use crate::numerics::minimum;
 use crate::physics::conic::{self, Orbit};
@@ -61,6 +61,7 @@ fn path(setting: &Setting, q: f64) -> Result<Path<2>, NoPassage> {
             },
             setting.target,
         ],
+        apsides: [Apsis::Peri, Apsis::Apo],
         coast_s: 0.5 * conic::period_s(gm, q, a),
     })
 }

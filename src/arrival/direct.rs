@@ -3,7 +3,7 @@
 //! Δv = v_h(p) − v_p(p, A), turned where the plane asks for it. No coast.
 
 use super::setting::Setting;
-use super::way::{NotFlyable, Objections, Path, Reason, Way, brake_step};
+use super::way::{Apsis, NotFlyable, Objections, Path, Reason, Way, brake_step};
 
 /// The one burn.
 ///
@@ -29,6 +29,7 @@ pub(super) fn solve(setting: &Setting) -> Result<Path<1>, NotFlyable> {
         )],
         radii: [p],
         orbits: [setting.target],
+        apsides: [Apsis::Peri],
         coast_s: 0.0,
     })
 }

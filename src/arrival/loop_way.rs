@@ -5,8 +5,8 @@
 
 use super::setting::{Choice, NoPassage, Setting};
 use super::way::{
-    MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step, log_grid,
-    lower_step, raise_step,
+    Apsis, MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step,
+    log_grid, lower_step, raise_step,
 };
 use crate::numerics::{minimum, root};
 use crate::physics::conic::{self, Orbit};
@@ -110,6 +110,7 @@ fn path(setting: &Setting, q: f64, apoapsis: f64) -> Result<Path<3>, NoPassage> 
             },
             setting.target,
         ],
+        apsides: [Apsis::Peri, Apsis::Apo, Apsis::Peri],
         coast_s: coast_s(setting, q, apoapsis),
     })
 }

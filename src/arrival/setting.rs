@@ -5,6 +5,7 @@
 
 use crate::physics::asymptote;
 use crate::physics::conic::{self, Orbit};
+use crate::physics::held_burn::Steering;
 use crate::physics::transfer::{Approach, NoArrival};
 use crate::physics::vehicle::Vehicle;
 
@@ -29,6 +30,10 @@ pub struct Setting {
     pub limits: Limits,
     /// The spacecraft, where one is given.
     pub vehicle: Option<Vehicle>,
+    /// Whether burns take time.
+    pub burns: Burns,
+    /// How often the braking of way steps is divided.
+    pub passes: Passes,
     /// Margins and fixed costs.
     pub policy: Policy,
     /// v∞² already found for one periapsis radius (km, km²/s²): a curve asks for the same brake radius hundreds of times,
@@ -42,6 +47,26 @@ pub enum Choice {
     /// This radius, km.
     Radius(f64),
     /// The cheapest inside the limits.
+    Best,
+}
+
+/// Whether burns take time, and how well that is reckoned. Without a vehicle burns take none.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Burns {
+    /// They take none.
+    Impulsive,
+    /// Losses by the first-order formula: instant, for a first picture.
+    Estimated(Steering),
+    /// Every burn integrated, the orbit it leaves held.
+    Integrated(Steering),
+}
+
+/// How many periapsis passes way steps divides its braking over.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Passes {
+    /// This many, at least two.
+    Number(usize),
+    /// The cheapest within the limits on starts and time.
     Best,
 }
 
@@ -138,6 +163,32 @@ impl Setting {
             self.remembered = self.approach.v_inf_sq(q).ok().map(|v_inf_sq| (q, v_inf_sq));
         }
         self
+    }
+
+    /// The same setting with burns that take no time.
+    #[must_use]
+    pub fn impulsive(mut self) -> Self {
+        self.burns = Burns::Impulsive;
+        self
+    }
+
+    /// The same setting with losses estimated instead of integrated.
+    #[must_use]
+    pub fn estimated(mut self) -> Self {
+        if let Burns::Integrated(steering) = self.burns {
+            self.burns = Burns::Estimated(steering);
+        }
+        self
+    }
+
+    /// How the engine is pointed where burns take time: `None` where they take none, or no vehicle is given.
+    pub fn lasting(&self) -> Option<(Vehicle, Steering)> {
+        match self.burns {
+            Burns::Impulsive => None,
+            Burns::Estimated(steering) | Burns::Integrated(steering) => {
+                self.vehicle.map(|vehicle| (vehicle, steering))
+            }
+        }
     }
 
     /// The same setting with another target.

@@ -1,9 +1,10 @@
 //! What every way has in common: its name, the plan it returns, the reasons why it cannot be flown.
 
 use super::setting::{NoPassage, PlaneDemand, Policy, Setting};
-use super::{dip, direct, loop_way};
+use super::{dip, direct, lasting, loop_way};
 use crate::physics::burn::{SpeedStep, captured_share, split_turn};
 use crate::physics::conic::{self, Orbit};
+use crate::physics::held_burn::{Controls, Track};
 use crate::physics::transfer::NoArrival;
 use crate::physics::vehicle::Vehicle;
 use arrayvec::ArrayVec;
@@ -20,6 +21,8 @@ pub enum Way {
     Dip,
     /// Brake low into a long ellipse, raise the periapsis far out, come back and brake into the target.
     Loop,
+    /// Direct or dip with the braking divided over several periapsis passes, so that each burn is short.
+    Steps,
 }
 
 /// One line of the table of ways.
@@ -56,6 +59,12 @@ impl Way {
             glyph: 'o',
             meaning: "brake low into a long ellipse, change plane and raise the periapsis far out, come back and brake into the target orbit",
         },
+        WayEntry {
+            way: Way::Steps,
+            name: "steps",
+            glyph: ':',
+            meaning: "direct or dip with the braking divided over several periapsis passes, so that each burn is short and loses less",
+        },
     ];
 
     /// How many ways there are.
@@ -65,6 +74,18 @@ impl Way {
     pub fn entry(self) -> &'static WayEntry {
         // The table lists the variants in their order; a test holds it to that.
         &Self::TABLE[self as usize]
+    }
+
+    /// Whether the way means anything in a setting: steps needs burns that last.
+    pub fn applies(self, setting: &Setting) -> bool {
+        self != Way::Steps || setting.lasting().is_some()
+    }
+
+    /// The ways that mean anything in a setting, in the order they are shown.
+    pub fn shown(setting: &Setting) -> impl Iterator<Item = &'static WayEntry> {
+        Self::TABLE
+            .iter()
+            .filter(|entry| entry.way.applies(setting))
     }
 
     /// The name in files and on screen.
@@ -78,10 +99,14 @@ impl Way {
     /// As [`Way::plan`].
     #[inline]
     pub fn figures(self, setting: &Setting) -> Result<Figures, NotFlyable> {
+        if let Some(engine) = setting.lasting() {
+            return lasting::figures(self, setting, engine);
+        }
         match self {
             Way::Direct => direct::solve(setting)?.figures(setting),
             Way::Dip => dip::solve(setting)?.figures(setting),
             Way::Loop => loop_way::solve(setting)?.figures(setting),
+            Way::Steps => Err(NotFlyable::because(Reason::NothingToDivide)),
         }
     }
 
@@ -91,10 +116,14 @@ impl Way {
     /// Every reason why the way cannot be flown there.
     #[inline]
     pub fn plan(self, setting: &Setting) -> Result<Plan, NotFlyable> {
+        if let Some(engine) = setting.lasting() {
+            return lasting::plan(self, setting, engine);
+        }
         match self {
             Way::Direct => direct::solve(setting)?.plan(setting),
             Way::Dip => dip::solve(setting)?.plan(setting),
             Way::Loop => loop_way::solve(setting)?.plan(setting),
+            Way::Steps => Err(NotFlyable::because(Reason::NothingToDivide)),
         }
     }
 }
@@ -120,6 +149,37 @@ pub struct Burn {
     pub propellant_kg: Option<f64>,
     /// Time at full thrust, s, where a vehicle is given.
     pub duration_s: Option<f64>,
+    /// How it is flown, where burns are integrated and there is something to burn.
+    pub flown: Option<Flown>,
+}
+
+/// How an integrated burn is flown.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Flown {
+    /// Ignition, duration, aim and attitude.
+    pub controls: Controls,
+    /// What is seen on the way.
+    pub track: Track,
+    /// Mass at ignition, kg.
+    pub mass_at_ignition_kg: f64,
+    /// The conic before it.
+    pub before: Before,
+}
+
+/// The conic before an integrated burn.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Before {
+    /// The arriving hyperbola.
+    Hyperbola {
+        /// Its v∞², km²/s².
+        v_inf_sq: f64,
+        /// Its periapsis radius, km.
+        periapsis_km: f64,
+    },
+    /// An ellipse, burnt at its periapsis.
+    AtPeriapsis(Orbit),
+    /// An ellipse, burnt at its apoapsis.
+    AtApoapsis(Orbit),
 }
 
 /// What a way costs, without its burns: all that a curve or a search asks for. Copies without allocating.
@@ -145,6 +205,10 @@ pub struct Figures {
     pub starts: usize,
     /// Masses and times, where a vehicle is given.
     pub consumption: Option<Consumption>,
+    /// Share of the first burn's Δv until capture, where it has been integrated.
+    pub captured_flown: Option<f64>,
+    /// Lowest radius of integrated burns, km.
+    pub lowest_flown_km: Option<f64>,
 }
 
 /// What a vehicle makes of a plan.
@@ -289,6 +353,41 @@ pub enum Reason {
     },
     /// The arrival model gives no hyperbola.
     NotHyperbolic,
+    /// Burns take no time, so there is nothing to gain by dividing one.
+    NothingToDivide,
+    /// The path sinks under the floor during a burn.
+    BurnUnderFloor {
+        /// Lowest radius.
+        lowest: f64,
+        /// Floor radius.
+        floor: f64,
+    },
+    /// Propellant is short even for the impulsive burns, so for those that last all the more.
+    PropellantShortAnyway {
+        /// Propellant that impulsive burns need, with margin and residuals.
+        needs: f64,
+        /// Propellant aboard.
+        aboard: f64,
+    },
+    /// A burn would take nearly the whole mass as propellant.
+    BurnTakesAll {
+        /// Which burn, counted from one.
+        burn: usize,
+    },
+    /// No ignition, aim and duration of a burn leave the wanted orbit with this thrust.
+    BurnNeverCloses {
+        /// Which burn, counted from one.
+        burn: usize,
+        /// Thrust of the engine, N.
+        thrust: f64,
+        /// Thrust with which it still does, N, where one was found.
+        closes_at: Option<f64>,
+    },
+    /// A long burn has to be aimed at a periapsis that the transfer does not reach.
+    AimOutOfReach {
+        /// That periapsis radius.
+        periapsis: f64,
+    },
     /// The periapsis lies too far from the equator for burns on the line of apsides.
     LineOfApsides {
         /// By how much its latitude is over the wanted inclination.
@@ -380,6 +479,13 @@ impl Objections {
     }
 }
 
+/// Which apsis a burn is centred on.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Apsis {
+    Peri,
+    Apo,
+}
+
 /// The bare path of a way: what its geometry says before vehicle, policy and limits are asked.
 pub(super) struct Path<const N: usize> {
     pub(super) way: Way,
@@ -390,6 +496,7 @@ pub(super) struct Path<const N: usize> {
     pub(super) steps: [SpeedStep; N],
     pub(super) radii: [f64; N],
     pub(super) orbits: [Orbit; N],
+    pub(super) apsides: [Apsis; N],
     pub(super) coast_s: f64,
 }
 
@@ -426,6 +533,8 @@ impl<const N: usize> Path<N> {
             duration_s: self.coast_s,
             starts: N,
             consumption: None,
+            captured_flown: None,
+            lowest_flown_km: None,
         };
         if let Some(vehicle) = &setting.vehicle {
             let (used, burning) = consume(vehicle, &spent, &figures, policy);
@@ -461,6 +570,7 @@ impl<const N: usize> Path<N> {
                     .vehicle
                     .zip(propellant_kg)
                     .map(|(vehicle, used)| vehicle.burn_time_s(used)),
+                flown: None,
             });
         }
         let captured_after_s =
@@ -496,7 +606,7 @@ impl<const N: usize> Path<N> {
 }
 
 /// Rocket equation over the burns: masses and the longest burn, and the time all burns take together, s.
-fn consume(
+pub(super) fn consume(
     vehicle: &Vehicle,
     spent: &[f64],
     figures: &Figures,
@@ -525,12 +635,16 @@ fn consume(
 impl Figures {
     /// Share of the first burn's own Δv after which the spacecraft is captured. Computed when asked for: searches do not.
     pub fn captured_share(&self) -> Option<f64> {
+        self.captured_flown.or_else(|| self.captured_impulsively())
+    }
+
+    fn captured_impulsively(&self) -> Option<f64> {
         captured_share(self.first_step, self.first_turn, self.v_inf_sq)
     }
 
     /// Holds times, starts and masses against the limits.
     #[inline]
-    fn hold_to_limits(&self, setting: &Setting) -> Result<(), NotFlyable> {
+    pub(super) fn hold_to_limits(&self, setting: &Setting) -> Result<(), NotFlyable> {
         let limits = &setting.limits;
         let mut objections = Objections::default();
         if limits.longest_s < self.duration_s {
@@ -543,6 +657,14 @@ impl Figures {
             objections.add(Reason::TooManyStarts {
                 needs: self.starts,
                 limit: limits.most_starts,
+            });
+        }
+        if let Some(lowest) = self.lowest_flown_km
+            && lowest < limits.floor_radius_km * (1.0 - 1e-9)
+        {
+            objections.add(Reason::BurnUnderFloor {
+                lowest,
+                floor: limits.floor_radius_km,
             });
         }
         if let (Some(used), Some(vehicle)) = (&self.consumption, &setting.vehicle) {

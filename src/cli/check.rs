@@ -2,14 +2,17 @@
 
 use super::args::CheckArgs;
 use super::{Outcome, output, source};
+use crate::crew::Threads;
 use crate::report::checks;
 use crate::scenario::write;
-use crate::study::{Answer, check};
-use anyhow::Result;
+use crate::study::{Answer, check, landmarks};
+use anyhow::{Result, anyhow};
 
 pub(super) fn run(args: &CheckArgs) -> Result<Outcome> {
     let loaded = source::open(&args.source.file, &args.source.set)?;
-    let answer = Answer::of(&loaded.case);
+    let setting = loaded.case.setting();
+    let answer = Answer::with(setting, landmarks::scan_points(setting), &Threads::all())
+        .map_err(|_| anyhow!("the computation was stopped"))?;
     let checks = check::check(&loaded.case, &answer);
     let mut text = format!(
         "{} is sound (fingerprint {})\n\n",

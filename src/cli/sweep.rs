@@ -2,6 +2,7 @@
 
 use super::args::{SweepArgs, SweepFormat};
 use super::{Outcome, output, source};
+use crate::crew::Threads;
 use crate::report::sweep::Sweep;
 use crate::scenario::write;
 use crate::study::curve::{self, Axis, Cell, MOST_POINTS};
@@ -45,8 +46,10 @@ pub(super) fn run(args: &SweepArgs) -> Result<Outcome> {
             )?)
         }
     };
+    let crew = Threads::all();
     let cells = match &second {
-        None => curve::curve(case, &first)
+        None => curve::curve_with(case, &first, &crew)
+            .map_err(|_| anyhow!("the computation was stopped"))?
             .into_iter()
             .map(|row| Cell { y: 0.0, row })
             .collect(),
@@ -58,7 +61,8 @@ pub(super) fn run(args: &SweepArgs) -> Result<Outcome> {
                     second.points
                 );
             }
-            curve::map(case, &first, second)
+            curve::map_with(case, &first, second, &crew)
+                .map_err(|_| anyhow!("the computation was stopped"))?
         }
     };
     let sweep = Sweep {
@@ -67,6 +71,7 @@ pub(super) fn run(args: &SweepArgs) -> Result<Outcome> {
         second,
         cells,
         fingerprint: write::fingerprint(case.spec()),
+        crew: &crew,
     };
     let text = match args.format {
         SweepFormat::Text => sweep.text(),

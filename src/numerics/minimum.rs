@@ -19,7 +19,18 @@ pub struct Minimum {
 /// # Method
 /// Brent (1973), chapter 5: golden section with parabolic steps. Stops at a width of
 /// [`MINIMUM_RELATIVE`].
-pub fn refine(mut f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64, start: Minimum) -> Minimum {
+pub fn refine(f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64, start: Minimum) -> Minimum {
+    refine_to(f, a, b, start, MINIMUM_RELATIVE)
+}
+
+/// As [`refine`], to a relative width of one's own.
+pub fn refine_to(
+    mut f: impl FnMut(f64) -> Option<f64>,
+    a: f64,
+    b: f64,
+    start: Minimum,
+    relative: f64,
+) -> Minimum {
     const GOLDEN: f64 = 0.381_966_011_250_105_1;
     let mut at = |x: f64| f(x).unwrap_or(f64::INFINITY);
     let (mut a, mut b) = (a.min(b), a.max(b));
@@ -30,7 +41,7 @@ pub fn refine(mut f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64, start: Mini
     let (mut d, mut e) = (0.0_f64, 0.0_f64);
     for _ in 0..100 {
         let middle = 0.5 * (a + b);
-        let tolerance = MINIMUM_RELATIVE * x.abs() + 1e-300;
+        let tolerance = relative * x.abs() + 1e-300;
         if (x - middle).abs() <= 2.0 * tolerance - 0.5 * (b - a) {
             break;
         }
@@ -100,7 +111,16 @@ pub fn refine(mut f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64, start: Mini
 ///
 /// `None` when `f` exists at no node. A minimum at the first or last node is returned as it is when
 /// the function still falls towards that end, so that a bound which binds is met exactly.
-pub fn scan_then_refine(mut f: impl FnMut(f64) -> Option<f64>, grid: &[f64]) -> Option<Minimum> {
+pub fn scan_then_refine(f: impl FnMut(f64) -> Option<f64>, grid: &[f64]) -> Option<Minimum> {
+    scan_then_refine_to(f, grid, MINIMUM_RELATIVE)
+}
+
+/// As [`scan_then_refine`], to a relative width of one's own.
+pub fn scan_then_refine_to(
+    mut f: impl FnMut(f64) -> Option<f64>,
+    grid: &[f64],
+    relative: f64,
+) -> Option<Minimum> {
     let mut best: Option<(usize, Minimum)> = None;
     for (k, &x) in grid.iter().enumerate() {
         if let Some(value) = f(x).filter(|value| value.is_finite())
@@ -129,7 +149,7 @@ pub fn scan_then_refine(mut f: impl FnMut(f64) -> Option<f64>, grid: &[f64]) -> 
             return Some(found);
         }
     }
-    Some(refine(f, low, high, found))
+    Some(refine_to(f, low, high, found, relative))
 }
 
 /// Places the stationary point of a smooth `f` near a minimum already found to about 1e-8.

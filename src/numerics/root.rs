@@ -21,7 +21,20 @@ pub enum NoRoot {
 /// # Errors
 /// [`NoRoot::SameSign`] without a sign change, [`NoRoot::Undefined`] where `f` returns `None` or a
 /// value that is not finite.
-pub fn bracketed(mut f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64) -> Result<f64, NoRoot> {
+pub fn bracketed(f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64) -> Result<f64, NoRoot> {
+    bracketed_to(f, a, b, ROOT_RELATIVE)
+}
+
+/// As [`bracketed`], to a relative width of one's own.
+///
+/// # Errors
+/// As [`bracketed`].
+pub fn bracketed_to(
+    mut f: impl FnMut(f64) -> Option<f64>,
+    a: f64,
+    b: f64,
+    relative: f64,
+) -> Result<f64, NoRoot> {
     let mut at = |x: f64| f(x).filter(|y| y.is_finite()).ok_or(NoRoot::Undefined);
     let (mut a, mut b) = (a, b);
     let (mut fa, mut fb) = (at(a)?, at(b)?);
@@ -43,7 +56,7 @@ pub fn bracketed(mut f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64) -> Resul
             (a, b, c) = (b, c, b);
             (fa, fb, fc) = (fb, fc, fb);
         }
-        let tolerance = ROOT_RELATIVE * b.abs() + f64::MIN_POSITIVE;
+        let tolerance = relative * b.abs() + f64::MIN_POSITIVE;
         let half = 0.5 * (c - b);
         if fb == 0.0 || half.abs() <= tolerance {
             return Ok(b);
@@ -97,12 +110,22 @@ pub fn bracketed(mut f: impl FnMut(f64) -> Option<f64>, a: f64, b: f64) -> Resul
 /// and returns the last point on each side.
 ///
 /// For borders that are not roots: where a limit begins to bind, a cost jumps.
-pub fn border(mut predicate: impl FnMut(f64) -> bool, a: f64, b: f64) -> (f64, f64) {
+pub fn border(predicate: impl FnMut(f64) -> bool, a: f64, b: f64) -> (f64, f64) {
+    border_to(predicate, a, b, ROOT_RELATIVE)
+}
+
+/// As [`border`], to a relative width of one's own.
+pub fn border_to(
+    mut predicate: impl FnMut(f64) -> bool,
+    a: f64,
+    b: f64,
+    relative: f64,
+) -> (f64, f64) {
     let (mut a, mut b) = (a, b);
     let first = predicate(a);
     for _ in 0..200 {
         let middle = 0.5 * (a + b);
-        if middle == a || middle == b || (b - a).abs() <= ROOT_RELATIVE * middle.abs() {
+        if middle == a || middle == b || (b - a).abs() <= relative * middle.abs() {
             break;
         }
         if predicate(middle) == first {

@@ -32,3 +32,17 @@ pub const SAME_COST_RELATIVE: f64 = 1.0e-13;
 /// At 1e-10 the finite-burn loss of every reference case is within 1e-6 m/s of its value at 1e-12; half of it moves the
 /// loss by less (a test holds that to 0.01 m/s).
 pub const ARC_RELATIVE: f64 = 1.0e-10;
+
+/// Relative width at which a root search stops whose every value is itself a solved course of burns.
+///
+/// Costs of integrated courses are smooth to about 1e-11 of themselves; two that cross at an angle cross to about that.
+pub const FLOWN_ROOT_RELATIVE: f64 = 1.0e-11;
+
+/// Relative width at which the search for the border of a limit stops where every look at it integrates burns: a millimetre on a body's
+/// radius.
+pub const FLOWN_BORDER_RELATIVE: f64 = 1.0e-9;
+
+/// Relative width at which a search in a flat valley stops whose every value is itself a solved course of burns.
+///
+/// The cost changes by the square of the displacement: by some 1e-9 of itself at this width, below what the flights carry.
+pub const FLAT_RELATIVE: f64 = 3.0e-5;

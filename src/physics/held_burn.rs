@@ -14,8 +14,13 @@
 //! the motion and its size is held; that the node lies on the line of apsides is not (it lies within the burn's arc). Source: equations
 //! of motion as in any textbook; the formulation is our own (docs/model.md), checked against the reference collection.
 
+mod estimate;
 mod flight;
+mod off_nominal;
 mod solve;
+
+pub use estimate::first_order_loss_km_s;
+pub use off_nominal::{Left, Missed};
 
 use super::conic::Orbit;
 use super::thrust_arc::State;

@@ -8,10 +8,10 @@
 //! on 1/r_a = (1 − e)/p, which is regular through e = 1, and the held periapsis are design choices (docs/model.md).
 
 use super::conic::{self, Orbit};
+use super::held_burn::{Engine, Start, Steering, Task};
 use super::vehicle::Vehicle;
 use crate::numerics::integrate::{Accuracy, End, Stop, integrate};
-use crate::numerics::minimum::{self, Minimum};
-use crate::numerics::root;
+use crate::numerics::minimum;
 use crate::numerics::tolerance::ARC_RELATIVE;
 
 /// How the engine is pointed.
@@ -77,16 +77,21 @@ pub enum NoArc {
 
 /// The state on a hyperbola at a time from its periapsis, s (negative: before). Takes v∞² (km²/s²).
 ///
-/// Kepler's equation e sinh F − F = t √(μ/|a|³), by Newton from a starter that brackets its growth; error a few units in the last place.
+/// Kepler's equation e sinh F − F = t √(μ/|a|³), by Newton from a starter that brackets its growth; error a few units in the last place, times e/(e − 1) near a
+/// parabola.
 pub fn hyperbola_state(gm: f64, v_inf_sq: f64, q: f64, t: f64) -> State {
     let a = gm / v_inf_sq;
     let e = conic::hyperbola_eccentricity(gm, v_inf_sq, q);
     let n = (gm / (a * a * a)).sqrt();
     let mean = n * t;
-    // For small anomalies F ≈ M/(e − 1), for large ones F ≈ ln(2M/e).
-    let mut anomaly = (mean.abs() / e)
+    // Bounds from above, so that Newton comes down steadily: e sinh F − F is at least (e − 1) F, e F³/6, and, for F above 1, sinh F
+    // times 1 − 1/sinh 1.
+    let size = mean.abs();
+    let mut anomaly = (6.72 * size)
         .asinh()
-        .min(mean.abs() / (e - 1.0))
+        .max(1.0)
+        .min((6.0 * size / e).cbrt())
+        .min(size / (e - 1.0))
         .copysign(mean);
     for _ in 0..60 {
         let step = (e * anomaly.sinh() - anomaly - mean) / (e * anomaly.cosh() - 1.0);
@@ -354,55 +359,52 @@ impl Capture {
             })
     }
 
-    /// The ignition and the aim that spend least and leave an orbit with periapsis `held` (km).
+    /// The ignition and the aim that spend least and leave an orbit with periapsis `held` (km), the engine against the velocity.
     ///
-    /// Braking against the velocity lowers the periapsis during the burn, so the hyperbola is aimed higher until the resulting orbit is the wanted
-    /// one. For each ignition the aim is a root; the cheapest ignition is then searched. `None` where no ignition captures.
+    /// Solved by [`super::held_burn`], flown here. `None` where no burn closes, and for another pointing: a fixed or turning attitude is
+    /// optimised there and not given.
     pub fn held(&self, held: f64) -> Option<BestCapture> {
-        // A first aim from the best ignition at the wanted periapsis itself.
-        let mut guess = held;
-        for _ in 0..3 {
-            let first = self.best_lead(guess)?;
-            guess *= held / first.arc.orbit.periapsis_km;
+        if self.pointing != Pointing::AgainstVelocity {
+            return None;
         }
-        let scale = self.impulsive_time_s(guess);
-        let start = self.best_lead(guess)?;
-        let aim = |lead: f64| self.aim(held, lead, guess);
-        let cost = |share: f64| aim(share * scale).map(|(_, arc)| arc.dv_km_s);
-        let centre = start.lead_s / scale;
-        let at_centre = Minimum {
-            x: centre,
-            value: cost(centre)?,
-        };
-        let found = minimum::refine(cost, 0.8 * centre, 1.25 * centre, at_centre);
-        let lead_s = found.x * scale;
-        aim(lead_s).map(|(q, arc)| BestCapture {
-            aimed_periapsis_km: q,
+        let approach = |_: f64| Some(self.v_inf_sq);
+        let burn = Task {
+            gm: self.gm,
+            start: Start::Hyperbola(&approach),
+            open_km: held,
+            speed_before_km_s: conic::hyperbola_speed_km_s(self.gm, self.v_inf_sq, held),
+            speed_after_km_s: conic::periapsis_speed_km_s(self.gm, held, self.apoapsis_km),
+            turn_rad: 0.0,
+            goal: Orbit {
+                periapsis_km: held,
+                apoapsis_km: self.apoapsis_km,
+            },
+            engine: Engine {
+                thrust_n: self.vehicle.thrust_n,
+                exhaust_km_s: self.vehicle.exhaust_speed_km_s(),
+                mass_kg: self.vehicle.start_mass_kg(),
+            },
+            steering: Steering::AgainstVelocity,
+        }
+        .solve(None)
+        .ok()?;
+        let (aim, lead_s) = (burn.controls.open_km, burn.controls.lead_s);
+        let start = hyperbola_state(self.gm, self.v_inf_sq, aim, -lead_s);
+        let arc = fly(
+            self.gm,
+            &self.vehicle,
+            self.pointing,
+            (start, self.vehicle.start_mass_kg()),
+            -lead_s,
+            ShutOff::After(burn.controls.duration_s),
+            f64::INFINITY,
+        )
+        .ok()?;
+        Some(BestCapture {
+            aimed_periapsis_km: aim,
             lead_s,
             arc,
         })
-    }
-
-    /// The aim that leaves periapsis `held` for a given ignition.
-    fn aim(&self, held: f64, lead_s: f64, guess: f64) -> Option<(f64, ThrustArc)> {
-        let miss = |q: f64| {
-            self.with_lead(q, lead_s)
-                .ok()
-                .map(|arc| arc.orbit.periapsis_km - held)
-        };
-        let (mut low, mut high) = (0.98 * guess, 1.02 * guess);
-        for _ in 0..12 {
-            match (miss(low), miss(high)) {
-                (Some(below), _) if 0.0 < below => low *= 0.93,
-                (_, Some(above)) if above < 0.0 => high *= 1.07,
-                (Some(_), Some(_)) => break,
-                // Where one end does not capture, the bracket is drawn in from that side.
-                (None, Some(_)) => low = 0.5 * (low + guess),
-                (_, None) => high = 0.5 * (high + guess),
-            }
-        }
-        let q = root::bracketed(miss, low, high).ok()?;
-        self.with_lead(q, lead_s).ok().map(|arc| (q, arc))
     }
 }
 

@@ -7,13 +7,16 @@ mod text;
 pub(super) use json::{LandmarksJson, PROGRAM, ProgramJson, landmarks as landmarks_json};
 
 use super::plot::{self, Glyphs, Mark, Plot, Quantity};
+use super::stops;
 use super::words;
 use crate::arrival::{Plan, Way};
-use crate::study::curve::{self, Axis, Row};
+use crate::study::curve::{self, Axis};
+use crate::study::engine::{self, Divided, Questions};
 use crate::study::knob::{KnobId, by_id};
 use crate::study::landmarks;
 use crate::study::verdict::{self, Verdict};
 use crate::study::warning::{self, Warning};
+use crate::study::watch::{Alone, Crew, Stopped};
 use crate::study::{Answer, Case};
 
 /// What stands over the scenario at the end of a brief.
@@ -36,16 +39,54 @@ pub struct Brief<'a> {
     pub shifts: Vec<String>,
     /// Warnings.
     pub warnings: Vec<Warning>,
+    /// What is asked about the engine, in words; empty where burns take no time.
+    pub engine: Vec<String>,
+    /// What is left when the first burn of the cheapest way stops early.
+    pub questions: Option<Questions>,
+    /// What each extra pass saves.
+    pub divisions: Vec<Divided>,
     /// Fingerprint of the scenario.
     pub fingerprint: String,
+    /// Who shares the work of the curve.
+    crew: &'a dyn Crew,
 }
 
 impl<'a> Brief<'a> {
-    /// Asks everything a brief needs.
+    /// Asks everything a brief needs, on one thread.
     pub fn of(case: &'a Case, fingerprint: String) -> Self {
         let answer = Answer::of(case);
         let verdict = verdict::verdict(case.setting(), &answer);
+        Self::from_parts(case, fingerprint, answer, verdict, &Alone)
+    }
+
+    /// Asks everything a brief needs, the work shared by a crew.
+    ///
+    /// # Errors
+    /// [`Stopped`] where the crew was stopped.
+    pub fn with(case: &'a Case, fingerprint: String, crew: &'a dyn Crew) -> Result<Self, Stopped> {
+        let setting = case.setting();
+        let answer = Answer::with(setting, landmarks::scan_points(setting), crew)?;
+        let verdict = verdict::weigh(setting, &answer, crew)?;
+        Ok(Self::from_parts(case, fingerprint, answer, verdict, crew))
+    }
+
+    fn from_parts(
+        case: &'a Case,
+        fingerprint: String,
+        answer: Answer,
+        verdict: Verdict,
+        crew: &'a dyn Crew,
+    ) -> Self {
+        let questions = answer
+            .best_plan()
+            .and_then(|plan| engine::questions(case.setting(), plan, 0));
+        let divisions = engine::divisions(case.setting());
         Self {
+            engine: answer.best_plan().map_or_else(Vec::new, |plan| {
+                words::engine(case, plan, questions.as_ref(), &divisions)
+            }),
+            questions,
+            divisions,
             sentence: words::verdict(case, &answer, &verdict),
             why: words::why(case, &verdict),
             shifts: words::shifts(case, &answer, &verdict),
@@ -54,6 +95,7 @@ impl<'a> Brief<'a> {
             answer,
             verdict,
             fingerprint,
+            crew,
         }
     }
 
@@ -77,6 +119,13 @@ impl<'a> Brief<'a> {
         json::render(self)
     }
 
+    /// What is left when the first burn of the cheapest way stops early, as lines of characters.
+    fn stop_curve(&self, width: usize) -> Vec<String> {
+        self.questions.as_ref().map_or_else(Vec::new, |questions| {
+            stops::lines(self.case, questions, width, 9)
+        })
+    }
+
     /// The cost curve over the sensible range as lines of characters.
     fn curve(&self, width: usize, height: usize, glyphs: Glyphs) -> Vec<String> {
         let case = self.case;
@@ -95,7 +144,9 @@ impl<'a> Brief<'a> {
         ) else {
             return Vec::new();
         };
-        let rows: Vec<Row> = curve::curve(case, &axis);
+        let Ok(rows) = curve::curve_with(case, &axis, self.crew) else {
+            return Vec::new();
+        };
         let mark = |way: Way, radius: f64| {
             let figures = way
                 .figures(&landmarks::at_radius(case.setting(), radius))

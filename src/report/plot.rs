@@ -17,6 +17,8 @@ pub enum Role {
     Label,
     /// The curve of a way.
     Way(Way),
+    /// The curve of a way without its finite-burn loss.
+    Companion(Way),
     /// Where the scenario stands.
     Here,
     /// The cheapest altitude.
@@ -226,6 +228,11 @@ pub fn draw(plot: &Plot, width: usize, height: usize) -> Picture {
         return picture;
     };
     draw_here(&mut picture, plot, &frame);
+    if plot.quantity == Quantity::Cost {
+        for entry in Way::TABLE.iter().rev() {
+            draw_companion(&mut picture, plot, &y_scale, plot_height, entry.way);
+        }
+    }
     for entry in Way::TABLE.iter().rev() {
         draw_way(&mut picture, plot, &y_scale, plot_height, entry.way, false);
     }
@@ -388,6 +395,32 @@ fn draw_here(picture: &mut Picture, plot: &Plot, frame: &Frame) {
     }
 }
 
+/// Draws what a way would cost without the finite-burn loss: a faint line that shows only where it leaves the way's own.
+fn draw_companion(picture: &mut Picture, plot: &Plot, scale: &Scale, plot_height: usize, way: Way) {
+    let glyph = match plot.glyphs {
+        Glyphs::Ascii => '.',
+        Glyphs::Fine => '\u{2508}',
+    };
+    for (x, row) in plot.rows.iter().enumerate() {
+        let Row::Asked(point) = row else { continue };
+        let Ok(sample) = &point.ways[way as usize] else {
+            continue;
+        };
+        let loss = sample.dv_km_s - sample.impulsive_dv_km_s;
+        if loss == 0.0 {
+            continue;
+        }
+        if let Some(cell) = scale.cell(1e3 * (sample.cost_km_s - loss)) {
+            picture.put(
+                GUTTER + x,
+                ABOVE + plot_height - 1 - cell,
+                glyph,
+                Role::Companion(way),
+            );
+        }
+    }
+}
+
 /// Draws one way; `best_only` draws just the stretch where it is the cheapest.
 fn draw_way(
     picture: &mut Picture,
@@ -416,7 +449,7 @@ fn draw_way(
                     let own = (y <= middle) == (cell < last);
                     let column = if own { x } else { x.saturating_sub(1) };
                     let (_, role) = picture.cell(GUTTER + column, ABOVE + plot_height - 1 - y);
-                    if matches!(role, Role::Blank | Role::Here) {
+                    if matches!(role, Role::Blank | Role::Here | Role::Companion(_)) {
                         let glyph = way.entry().glyph;
                         picture.put(
                             GUTTER + column,
@@ -448,5 +481,6 @@ fn glyph(glyphs: Glyphs, way: Way, position: Option<f64>, cell: usize) -> char {
         Way::Direct => pick(&['\u{23bd}', '\u{23bc}', '\u{2500}', '\u{23bb}', '\u{23ba}']),
         Way::Dip => pick(&['.', '\u{b7}', '\u{2d9}']),
         Way::Loop => pick(&['\u{2080}', 'o', '\u{b0}']),
+        Way::Steps => ':',
     }
 }

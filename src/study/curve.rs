@@ -3,6 +3,7 @@
 use super::answer::cheapest;
 use super::case::Case;
 use super::knob::{Knob, KnobId, Refused, Value};
+use super::watch::{Crew, Stopped, gather};
 use crate::arrival::{Figures, NotFlyable, Plan, Setting, Way};
 
 /// What is kept of a plan at one point of a curve. km/s, s, kg.
@@ -223,12 +224,90 @@ pub enum Row {
 
 /// Sweeps one knob.
 pub fn curve(case: &Case, axis: &Axis) -> Vec<Row> {
-    axis.values()
-        .map(|x| match setting_at(case, axis.knob, x) {
-            Ok(setting) => Row::Asked(Point::ask(x, &setting)),
-            Err(why) => Row::Refused { x, why },
-        })
-        .collect()
+    axis.values().map(|x| row(case, axis, x)).collect()
+}
+
+/// Sweeps one knob, the work shared by a crew.
+///
+/// # Errors
+/// [`Stopped`] where the crew was stopped.
+pub fn curve_with(case: &Case, axis: &Axis, crew: &dyn Crew) -> Result<Vec<Row>, Stopped> {
+    gather(crew, axis.points, |k| row(case, axis, axis.value(k)))
+}
+
+/// Sweeps one knob coarsely: only every `stride`-th value (and the last) is computed, those between are drawn through in a straight
+/// line. For a picture that is shown while the rest is computed, and marked as such.
+///
+/// # Errors
+/// [`Stopped`] where the crew was stopped.
+pub fn coarse_with(
+    case: &Case,
+    axis: &Axis,
+    stride: usize,
+    crew: &dyn Crew,
+) -> Result<Vec<Row>, Stopped> {
+    let stride = stride.max(1);
+    let mut asked: Vec<usize> = (0..axis.points).step_by(stride).collect();
+    if asked.last() != Some(&(axis.points - 1)) {
+        asked.push(axis.points - 1);
+    }
+    let nodes = gather(crew, asked.len(), |k| row(case, axis, axis.value(asked[k])))?;
+    let mut rows: Vec<Row> = Vec::with_capacity(axis.points);
+    for (ends, pair) in asked.windows(2).zip(nodes.windows(2)) {
+        for k in ends[0]..ends[1] {
+            let share = (k - ends[0]) as f64 / (ends[1] - ends[0]) as f64;
+            rows.push(between(&pair[0], &pair[1], share, axis.value(k)));
+        }
+    }
+    rows.extend(nodes.last().cloned());
+    Ok(rows)
+}
+
+/// A row between two: numbers where both have them, otherwise what the nearer one says.
+fn between(left: &Row, right: &Row, share: f64, x: f64) -> Row {
+    let (Row::Asked(a), Row::Asked(b)) = (left, right) else {
+        let mut near = if share < 0.5 { left } else { right }.clone();
+        match &mut near {
+            Row::Asked(point) => point.x = x,
+            Row::Refused { x: at, .. } => *at = x,
+        }
+        return near;
+    };
+    let ways = std::array::from_fn(|k| match (&a.ways[k], &b.ways[k]) {
+        (Ok(a), Ok(b)) => Ok(Sample::between(a, b, share)),
+        (a, b) => if share < 0.5 { a } else { b }.clone(),
+    });
+    Row::Asked(Point {
+        x,
+        best: best_of(&ways),
+        ways,
+    })
+}
+
+impl Sample {
+    fn between(a: &Self, b: &Self, share: f64) -> Self {
+        let mix = |a: f64, b: f64| a + share * (b - a);
+        let maybe = |a: Option<f64>, b: Option<f64>| a.zip(b).map(|(a, b)| mix(a, b));
+        Self {
+            cost_km_s: mix(a.cost_km_s, b.cost_km_s),
+            dv_km_s: mix(a.dv_km_s, b.dv_km_s),
+            impulsive_dv_km_s: mix(a.impulsive_dv_km_s, b.impulsive_dv_km_s),
+            propellant_kg: maybe(a.propellant_kg, b.propellant_kg),
+            final_mass_kg: maybe(a.final_mass_kg, b.final_mass_kg),
+            duration_s: mix(a.duration_s, b.duration_s),
+            starts: a.starts,
+            longest_burn_s: maybe(a.longest_burn_s, b.longest_burn_s),
+            captured_share: maybe(a.captured_share, b.captured_share),
+        }
+    }
+}
+
+/// One value of a sweep.
+pub fn row(case: &Case, axis: &Axis, x: f64) -> Row {
+    match setting_at(case, axis.knob, x) {
+        Ok(setting) => Row::Asked(Point::ask(x, &setting)),
+        Err(why) => Row::Refused { x, why },
+    }
 }
 
 /// One cell of a map: the values of both knobs and the point (its `x` is the first knob's value).
@@ -242,20 +321,45 @@ pub struct Cell {
 
 /// Sweeps two knobs: for each value of the second, all values of the first.
 pub fn map(case: &Case, first: &Axis, second: &Axis) -> Vec<Cell> {
-    let mut cells = Vec::with_capacity(first.points * second.points);
-    for y in second.values() {
-        match second.knob.set(case, Value::Number(y)) {
-            Ok(at_y) => cells.extend(curve(&at_y, first).into_iter().map(|row| Cell { y, row })),
-            Err(why) => {
-                cells.extend(first.values().map(|x| Cell {
-                    y,
-                    row: Row::Refused {
-                        x,
-                        why: why.clone(),
-                    },
-                }));
-            }
-        }
-    }
-    cells
+    second
+        .values()
+        .flat_map(|y| {
+            let at_y = second.knob.set(case, Value::Number(y));
+            first
+                .values()
+                .map(move |x| cell(&at_y, first, x, y))
+                .collect::<Vec<_>>()
+        })
+        .collect()
+}
+
+/// Sweeps two knobs, the work shared by a crew.
+///
+/// # Errors
+/// [`Stopped`] where the crew was stopped.
+pub fn map_with(
+    case: &Case,
+    first: &Axis,
+    second: &Axis,
+    crew: &dyn Crew,
+) -> Result<Vec<Cell>, Stopped> {
+    let cases: Vec<(f64, Result<Case, Refused>)> = second
+        .values()
+        .map(|y| (y, second.knob.set(case, Value::Number(y))))
+        .collect();
+    gather(crew, first.points * second.points, |k| {
+        let (y, at_y) = &cases[k / first.points];
+        cell(at_y, first, first.value(k % first.points), *y)
+    })
+}
+
+fn cell(at_y: &Result<Case, Refused>, first: &Axis, x: f64, y: f64) -> Cell {
+    let row = match at_y {
+        Ok(case) => row(case, first, x),
+        Err(why) => Row::Refused {
+            x,
+            why: why.clone(),
+        },
+    };
+    Cell { y, row }
 }

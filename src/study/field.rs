@@ -343,6 +343,14 @@ pub const FIELDS: &[Field] = &[
         "60",
     ),
     field(
+        "braking.steps.Passes",
+        "",
+        Including(2.0),
+        Including(7.0),
+        "number of periapsis passes that way steps divides its braking over",
+        "Best",
+    ),
+    field(
         "limits.most_starts",
         "",
         Including(1.0),

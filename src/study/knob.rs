@@ -3,12 +3,14 @@
 //! Screen, `--set`, `sweep`, `stoop knobs` and the documents all read this one table. Values are in the unit
 //! of the table.
 
+use super::answer::Answer;
 use super::case::{Case, Fault};
 use super::field::{Field, field_at};
 use super::spec::{
-    AltitudeChoice, ArrivalSpec, CapSpec, PlaneSpec, ShapeSpec, Spec, TransferApoapsis, VehicleSpec,
+    AltitudeChoice, ArrivalSpec, CapSpec, PassesChoice, PlaneSpec, ShapeSpec, Spec,
+    TransferApoapsis, VehicleSpec,
 };
-use crate::arrival::Way;
+use crate::arrival::{Plan, Way};
 use crate::physics::conic;
 
 /// One knob.
@@ -47,6 +49,7 @@ pub enum KnobId {
     TargetApoapsis,
     BrakeAltitude,
     LoopApoapsis,
+    Steps,
     VInf,
     Declination,
     Inclination,
@@ -151,6 +154,15 @@ pub const KNOBS: &[Knob] = &[
         "braking.loop_apoapsis.AltitudeKm",
         Step::Percent,
         "apoapsis altitude of the loop; `best` leaves it to the program",
+    ),
+    knob(
+        K::Steps,
+        "steps",
+        "steps",
+        "steps",
+        "braking.steps.Passes",
+        Step::Fixed(1.0),
+        "periapsis passes that way steps divides its braking over; `best` leaves it to the program",
     ),
     knob(
         K::VInf,
@@ -349,7 +361,7 @@ impl Knob {
 
     /// Whether `best` is a value of this knob.
     pub fn takes_best(&self) -> bool {
-        matches!(self.id, K::BrakeAltitude | K::LoopApoapsis)
+        matches!(self.id, K::BrakeAltitude | K::LoopApoapsis | K::Steps)
     }
 
     /// Reads the knob.
@@ -368,6 +380,10 @@ impl Knob {
             }),
             K::BrakeAltitude => Ok(choice(spec.braking.brake)),
             K::LoopApoapsis => Ok(choice(spec.braking.loop_apoapsis)),
+            K::Steps => Ok(match spec.braking.steps {
+                PassesChoice::Passes(passes) => Value::Number(f64::from(passes)),
+                PassesChoice::Best => Value::Best,
+            }),
             K::VInf => match &spec.arrival {
                 ArrivalSpec::Asymptote { v_inf_km_s, .. } => number(*v_inf_km_s),
                 ArrivalSpec::Energy { c3_km2_s2, .. } => number(c3_km2_s2.sqrt()),
@@ -473,6 +489,12 @@ impl Knob {
             K::TargetApoapsis => spec.target.shape = stretched(case, number),
             K::BrakeAltitude => spec.braking.brake = altitude_choice,
             K::LoopApoapsis => spec.braking.loop_apoapsis = altitude_choice,
+            K::Steps => {
+                spec.braking.steps = match value {
+                    Value::Best => PassesChoice::Best,
+                    Value::Number(number) => PassesChoice::Passes(whole(self, number)?),
+                };
+            }
             K::VInf => match &mut spec.arrival {
                 ArrivalSpec::Asymptote { v_inf_km_s, .. } => *v_inf_km_s = number,
                 ArrivalSpec::Energy { c3_km2_s2, .. } => *c3_km2_s2 = number * number,
@@ -501,14 +523,7 @@ impl Knob {
             K::Cap => spec.limits.cap = Some(CapSpec::AltitudeKm(number)),
             K::LongestDays => spec.limits.longest_days = number,
             K::MostStarts => {
-                if number.fract() != 0.0 {
-                    return Err(Refused::NotAllowed(format!(
-                        "{} {number} is not a whole number",
-                        self.name
-                    )));
-                }
-                // The field's range (1 to 8) has been checked.
-                spec.limits.most_starts = number as u32;
+                spec.limits.most_starts = whole(self, number)?;
             }
             K::LongestBurn => spec.limits.longest_burn_s = Some(number),
             K::Thrust => vehicle_mut(spec, self)?.thrust_n = number,
@@ -565,7 +580,7 @@ impl Knob {
                 one_digit(0.01 * base.abs().max(1e-3))
             }
         };
-        let step = if self.id == K::MostStarts {
+        let step = if matches!(self.id, K::MostStarts | K::Steps) {
             1.0
         } else {
             plain * coarseness
@@ -598,6 +613,10 @@ impl Knob {
 
     /// Whether the scenario has this value or can be given it by typing one.
     pub fn offered(&self, case: &Case) -> bool {
+        // Dividing burns that take no time means nothing.
+        if self.id == K::Steps {
+            return case.setting().lasting().is_some();
+        }
         if self.read(case).is_ok() {
             return true;
         }
@@ -627,9 +646,9 @@ impl Knob {
         )
     }
 
-    /// The value that `best` stands for at this case, in the knob's unit, where a flyable way shows it.
-    pub fn resolved(&self, case: &Case) -> Option<f64> {
-        let plan = |way: Way| way.plan(case.setting()).ok();
+    /// The value that `best` stands for in an answer to this case, in the knob's unit, where a flyable way shows it.
+    pub fn resolved(&self, case: &Case, answer: &Answer) -> Option<f64> {
+        let plan = |way: Way| answer.plan(way);
         match self.id {
             K::BrakeAltitude => plan(Way::Dip)
                 .or_else(|| plan(Way::Loop))
@@ -639,6 +658,7 @@ impl Knob {
                     .first()
                     .map(|burn| case.altitude_km(burn.orbit_after.apoapsis_km))
             }),
+            K::Steps => plan(Way::Steps).map(|plan| passes_of(plan) as f64),
             _ => None,
         }
     }
@@ -649,6 +669,26 @@ fn choice(choice: AltitudeChoice) -> Value {
         AltitudeChoice::AltitudeKm(altitude) => Value::Number(altitude),
         AltitudeChoice::Best => Value::Best,
     }
+}
+
+/// A whole number; its field's range has been checked.
+fn whole(knob: &Knob, number: f64) -> Result<u32, Refused> {
+    if number.fract() == 0.0 {
+        Ok(number as u32)
+    } else {
+        Err(Refused::NotAllowed(format!(
+            "{} {number} is not a whole number",
+            knob.name
+        )))
+    }
+}
+
+/// How many of a plan's burns brake.
+pub fn passes_of(plan: &Plan) -> usize {
+    plan.burns
+        .iter()
+        .filter(|burn| burn.speed_after_km_s < burn.speed_before_km_s)
+        .count()
 }
 
 fn not_here<T>(why: &str) -> Result<T, Refused> {

@@ -4,8 +4,11 @@
 //! everything else as in the setting. Radii here are those of the target's periapsis.
 
 use super::answer::cheapest;
-use crate::arrival::{Choice, Setting, Way};
-use crate::numerics::tolerance::SAME_COST_RELATIVE;
+use super::watch::{Alone, Crew, Stopped, gather};
+use crate::arrival::{Burns, Choice, Setting, Way};
+use crate::numerics::tolerance::{
+    FLOWN_BORDER_RELATIVE, FLOWN_ROOT_RELATIVE, ROOT_RELATIVE, SAME_COST_RELATIVE,
+};
 use crate::numerics::{minimum, root};
 
 /// Cheapest altitude and crossovers.
@@ -52,8 +55,23 @@ pub enum CrossoverKind {
     Limit,
 }
 
-/// Nodes of the scan over the sensible range.
+/// Nodes of the scan over the sensible range where burns take no time.
 pub const SCAN_POINTS: usize = 240;
+
+/// Nodes of the scan where burns are integrated: each is a thousand times the work, and the curves are as smooth.
+pub const INTEGRATED_SCAN_POINTS: usize = 120;
+
+/// Nodes of the scan where losses are estimated, for a first picture.
+pub const ESTIMATED_SCAN_POINTS: usize = 48;
+
+/// Nodes of the scan that a setting gets.
+pub fn scan_points(setting: &Setting) -> usize {
+    match setting.burns {
+        Burns::Impulsive => SCAN_POINTS,
+        Burns::Estimated(_) => ESTIMATED_SCAN_POINTS,
+        Burns::Integrated(_) => INTEGRATED_SCAN_POINTS,
+    }
+}
 
 /// The sensible range of the target periapsis radius (km): floor to where the target apoapsis meets the cap.
 ///
@@ -83,28 +101,48 @@ pub fn at_radius(setting: &Setting, radius_km: f64) -> Setting {
 
 /// Finds the landmarks of a setting.
 pub fn landmarks(setting: &Setting) -> Landmarks {
+    landmarks_with(setting, scan_points(setting), &Alone).unwrap_or_default()
+}
+
+/// Finds the landmarks of a setting with a number of scan nodes, the work shared by a crew.
+///
+/// # Errors
+/// [`Stopped`] where the crew was stopped.
+pub fn landmarks_with(
+    setting: &Setting,
+    points: usize,
+    crew: &dyn Crew,
+) -> Result<Landmarks, Stopped> {
     let Some((low, high)) = sensible_range(setting) else {
-        return Landmarks::default();
+        return Ok(Landmarks::default());
     };
-    let grid = grid(setting, low, high);
-    let nodes: Vec<Node> = grid
-        .iter()
-        .map(|&radius| Node::ask(setting, radius))
-        .collect();
-    Landmarks {
-        cheapest: cheapest_direct(setting, &grid, &nodes),
-        crossovers: crossovers(setting, &nodes),
-    }
+    let grid = grid(setting, low, high, points.max(2));
+    let nodes = gather(crew, grid.len(), |k| Node::ask(setting, grid[k]))?;
+    // The two refinements do not need each other.
+    let mut parts = gather(crew, 2, |part| {
+        if part == 0 {
+            (cheapest_direct(setting, &grid, &nodes), Vec::new())
+        } else {
+            (None, crossovers(setting, &nodes))
+        }
+    })?
+    .into_iter();
+    let cheapest = parts.next().and_then(|(cheapest, _)| cheapest);
+    let crossovers = parts.next().map_or_else(Vec::new, |(_, found)| found);
+    Ok(Landmarks {
+        cheapest,
+        crossovers,
+    })
 }
 
 /// Log-spaced radii; nodes crowd just above the brake radius, where dip and loop begin and r = q is a trivial tie.
-fn grid(setting: &Setting, low: f64, high: f64) -> Vec<f64> {
+fn grid(setting: &Setting, low: f64, high: f64, points: usize) -> Vec<f64> {
     let span = (high / low).ln();
-    let mut grid: Vec<f64> = (0..SCAN_POINTS)
-        .map(|k| low * (span * k as f64 / (SCAN_POINTS - 1) as f64).exp())
+    let mut grid: Vec<f64> = (0..points)
+        .map(|k| low * (span * k as f64 / (points - 1) as f64).exp())
         .collect();
     grid[0] = low;
-    grid[SCAN_POINTS - 1] = high;
+    grid[points - 1] = high;
     let brake = match setting.brake {
         Choice::Radius(brake) => brake,
         Choice::Best => low,
@@ -118,6 +156,14 @@ fn grid(setting: &Setting, low: f64, high: f64) -> Vec<f64> {
     grid.sort_by(f64::total_cmp);
     grid.dedup();
     grid
+}
+
+/// Relative widths at which searches for a tie and for the border of a limit stop.
+pub(super) fn sharpness(setting: &Setting) -> (f64, f64) {
+    match setting.burns {
+        Burns::Impulsive | Burns::Estimated(_) => (ROOT_RELATIVE, ROOT_RELATIVE),
+        Burns::Integrated(_) => (FLOWN_ROOT_RELATIVE, FLOWN_BORDER_RELATIVE),
+    }
 }
 
 /// Costs of all ways at one radius, km/s.
@@ -195,10 +241,11 @@ fn crossovers(setting: &Setting, nodes: &[Node]) -> Vec<Crossover> {
             (Some(_), Some(_)) => between(setting, left, right, 0, &mut found),
             // Nothing is flyable at one end: the last place where something is takes its part.
             (Some(_), None) | (None, Some(_)) => {
-                let (near, far) = root::border(
+                let (near, far) = root::border_to(
                     |radius| Node::ask(setting, radius).best.is_some(),
                     left.radius,
                     right.radius,
+                    sharpness(setting).1,
                 );
                 if left.best.is_some() {
                     between(setting, left, &Node::ask(setting, near), 0, &mut found);
@@ -243,17 +290,18 @@ fn between(setting: &Setting, left: &Node, right: &Node, depth: u32, found: &mut
     let tie = if apart {
         let difference =
             |radius: f64| Some(cost_at(setting, below, radius)? - cost_at(setting, above, radius)?);
-        root::bracketed(difference, left.radius, right.radius).ok()
+        root::bracketed_to(difference, left.radius, right.radius, sharpness(setting).0).ok()
     } else {
         None
     };
     let (radius, kind) = match tie {
         Some(radius) => (radius, CrossoverKind::Tie),
         None => {
-            let (_, right_side) = root::border(
+            let (_, right_side) = root::border_to(
                 |radius| Node::ask(setting, radius).best == Some(below),
                 left.radius,
                 right.radius,
+                sharpness(setting).1,
             );
             let kind = if both_flyable {
                 CrossoverKind::Tie
@@ -309,10 +357,11 @@ fn ends_within(
         if flyable(left) == flyable(right) {
             continue;
         }
-        let (near, far) = root::border(
+        let (near, far) = root::border_to(
             |radius| cost_at(setting, entry.way, radius).is_some(),
             left.radius,
             right.radius,
+            sharpness(setting).1,
         );
         let inside = Node::ask(setting, if flyable(left) { near } else { far });
         if inside.best.is_some_and(|best| best != winner) {

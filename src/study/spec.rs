@@ -194,6 +194,17 @@ pub struct BrakingSpec {
     pub brake: AltitudeChoice,
     /// Apoapsis altitude of the loop.
     pub loop_apoapsis: AltitudeChoice,
+    /// How many passes way steps divides its braking over.
+    pub steps: PassesChoice,
+}
+
+/// A number of passes, or left to the program.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum PassesChoice {
+    /// This many.
+    Passes(u32),
+    /// The program chooses inside the limits on starts and time.
+    Best,
 }
 
 /// An altitude, or left to the program.
@@ -244,16 +255,7 @@ pub struct VehicleSpec {
     pub steering: Steering,
 }
 
-/// How the engine is pointed during a burn. Used by burns that take time.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Steering {
-    /// Always against (or along) the velocity.
-    AgainstVelocity,
-    /// Inertially fixed.
-    FixedAttitude,
-    /// Turning at a constant rate.
-    TurningAttitude,
-}
+pub use crate::physics::held_burn::Steering;
 
 /// Whether burns take time.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -277,12 +279,15 @@ pub struct PolicySpec {
 
 /// Defaults of what a scenario may leave out, each with its reason.
 pub mod defaults {
-    use super::{AltitudeChoice, BrakingSpec, Burns, LimitsSpec, PolicySpec, Steering};
+    use super::{
+        AltitudeChoice, BrakingSpec, Burns, LimitsSpec, PassesChoice, PolicySpec, Steering,
+    };
 
     /// The program chooses how low to brake and how far to loop.
     pub const BRAKING: BrakingSpec = BrakingSpec {
         brake: AltitudeChoice::Best,
         loop_apoapsis: AltitudeChoice::Best,
+        steps: PassesChoice::Best,
     };
 
     /// 60 days and four starts: what an operations team plans for an arrival without special arrangements (common practice, no source).

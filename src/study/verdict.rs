@@ -6,6 +6,7 @@
 
 use super::answer::{Answer, ask, cheapest};
 use super::landmarks::{self, Crossover};
+use super::watch::{Alone, Crew, Stopped, gather};
 use crate::arrival::{Choice, NotFlyable, Plan, Reason, Setting, Way};
 use crate::arrival::{PlaneDemand, Policy};
 use crate::numerics::root;
@@ -89,6 +90,8 @@ pub enum Cause {
     StartLimit,
     /// v∞ depends on the periapsis.
     SpeedVaries,
+    /// Burns take time, and lose by it.
+    BurnsLast,
 }
 
 /// What one cause does: cost and crossover as they are against how they would be without it.
@@ -106,6 +109,16 @@ pub struct Shift {
 
 /// Weighs an answer.
 pub fn verdict(setting: &Setting, answer: &Answer) -> Verdict {
+    // One thread that is never stopped does not stop.
+    weigh(setting, answer, &Alone).unwrap_or_else(|Stopped| glance(setting, answer))
+}
+
+/// Weighs an answer without asking again what each cause moves.
+pub fn glance(setting: &Setting, answer: &Answer) -> Verdict {
+    weighed(setting, answer, Vec::new())
+}
+
+fn weighed(setting: &Setting, answer: &Answer, shifts: Vec<Shift>) -> Verdict {
     let mut standings: Vec<Standing> = answer
         .ways
         .iter()
@@ -117,18 +130,27 @@ pub fn verdict(setting: &Setting, answer: &Answer) -> Verdict {
         .into_iter()
         .min_by(|a, b| a.cost_km_s.total_cmp(&b.cost_km_s));
     let radii = radii(setting, answer);
-    let nearest = nearest_crossover(setting, &answer.landmarks.crossovers);
     Verdict {
         best,
         runner_up,
         radii,
         ideal: ideal(&radii),
-        nearest,
-        shifts: causes(setting, answer)
-            .into_iter()
-            .map(|cause| shift(setting, answer, nearest, cause))
-            .collect(),
+        nearest: nearest_crossover(setting, &answer.landmarks.crossovers),
+        shifts,
     }
+}
+
+/// Weighs an answer, the work shared by a crew.
+///
+/// # Errors
+/// [`Stopped`] where the crew was stopped.
+pub fn weigh(setting: &Setting, answer: &Answer, crew: &dyn Crew) -> Result<Verdict, Stopped> {
+    let nearest = nearest_crossover(setting, &answer.landmarks.crossovers);
+    let causes = causes(setting, answer);
+    let shifts = gather(crew, causes.len(), |k| {
+        shift(setting, answer, nearest, causes[k])
+    })?;
+    Ok(weighed(setting, answer, shifts))
 }
 
 fn radii(setting: &Setting, answer: &Answer) -> Radii {
@@ -228,6 +250,9 @@ fn causes(setting: &Setting, answer: &Answer) -> Vec<Cause> {
     if matches!(setting.approach, Approach::FromParent(_)) {
         causes.push(Cause::SpeedVaries);
     }
+    if setting.lasting().is_some() {
+        causes.push(Cause::BurnsLast);
+    }
     causes
 }
 
@@ -247,6 +272,7 @@ fn without(setting: &Setting, cause: Cause) -> Option<Setting> {
         Cause::Cap => other.limits.cap_radius_km = 2.0 * setting.limits.cap_radius_km,
         Cause::TimeLimit => other.limits.longest_s = f64::INFINITY,
         Cause::StartLimit => other.limits.most_starts = crate::arrival::way::MOST_BURNS,
+        Cause::BurnsLast => other = other.impulsive(),
         Cause::SpeedVaries => {
             other.remembered = None;
             other.approach = Approach::Given(
@@ -323,7 +349,8 @@ fn moved(setting: &Setting, crossover: &Crossover) -> Option<f64> {
                 return Ok(None);
             };
             if (there < 0.0) != (value < 0.0) {
-                return root::bracketed(gap, radius, next).map_or(Ok(None), Err);
+                let sharp = landmarks::sharpness(setting).0;
+                return root::bracketed_to(gap, radius, next, sharp).map_or(Ok(None), Err);
             }
             Ok(Some((next, there)))
         };

@@ -136,7 +136,54 @@ pub fn loss_estimate_km_s(gm: f64, plan: &Plan) -> Option<(f64, f64)> {
         .max_by(|a, b| a.0.total_cmp(&b.0))
 }
 
+/// Where an integrated burn begins or ends too far out for one body's pull alone.
+fn far_burn(case: &Case, plan: &Plan, out: &mut Vec<Warning>) {
+    let Some(sphere) = case.body().sphere_of_influence_km() else {
+        return;
+    };
+    let farthest = plan
+        .burns
+        .iter()
+        .filter_map(|burn| burn.flown)
+        .map(|flown| flown.track.ignition_radius_km)
+        .fold(0.0, f64::max);
+    if sphere < farthest {
+        out.push(Warning {
+            code: "burn-far-out",
+            text: format!(
+                "{}: a burn begins at {farthest:.0} km radius, outside the sphere of influence ({sphere:.0} km), where the pull of one body alone is not the truth.",
+                plan.way.name()
+            ),
+        });
+    }
+}
+
+/// Where an integrated burn goes so far round the body that its loss depends on every detail of the steering.
+fn long_arc(plan: &Plan, out: &mut Vec<Warning>) {
+    let widest = plan
+        .burns
+        .iter()
+        .filter_map(|burn| burn.flown)
+        .map(|flown| flown.track.arc_rad)
+        .fold(0.0, f64::max);
+    if 0.5 * PI < widest {
+        out.push(Warning {
+            code: "long-arc",
+            text: format!(
+                "{}: one burn goes {:.0} degrees round the body; its loss depends on the steering in detail, and more thrust or steps would cost less.",
+                plan.way.name(),
+                widest.to_degrees()
+            ),
+        });
+    }
+}
+
 fn impulsive(case: &Case, plan: &Plan, out: &mut Vec<Warning>) {
+    if case.setting().lasting().is_some() {
+        far_burn(case, plan, out);
+        long_arc(plan, out);
+        return;
+    }
     let Some((loss, seconds)) = loss_estimate_km_s(case.body().gm_km3_s2, plan) else {
         return;
     };
@@ -144,7 +191,7 @@ fn impulsive(case: &Case, plan: &Plan, out: &mut Vec<Warning>) {
         out.push(Warning {
             code: "burns-take-time",
             text: format!(
-                "{}: costs here are impulsive, but one burn takes {:.1} min; a first-order estimate of its finite-burn loss is {:.0} m/s (fixed attitude; an upper estimate for long burns).",
+                "{}: costs here are impulsive (`burns: Impulsive`), but one burn takes {:.1} min; a first-order estimate of its finite-burn loss is {:.0} m/s (fixed attitude; an upper estimate for long burns).",
                 plan.way.name(),
                 seconds / 60.0,
                 1e3 * loss

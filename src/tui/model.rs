@@ -1,18 +1,15 @@
 //! Everything the explorer knows: the scenario, its history, what is looked at, and the results for it.
 //!
-//! Results are computed here, when something they depend on changes; drawing only reads them.
+//! Results are asked for here, when something they depend on changes; drawing only reads them.
 
-use super::layout;
+use super::results::{self, Results};
+use super::worker::{Job, Report};
 use crate::arrival::Way;
-use crate::report::plot::{self, Glyphs, Mark, Quantity};
-use crate::report::words;
+use crate::report::plot::{Glyphs, Quantity};
 use crate::scenario::file::{self, Loaded, Stamp};
-use crate::study::curve::{self, Axis, Row};
 use crate::study::knob::{self, KNOBS, Knob, KnobId};
-use crate::study::landmarks;
-use crate::study::verdict::{self, Verdict};
-use crate::study::warning::{self, Warning};
-use crate::study::{Answer, Case, Spec};
+use crate::study::watch::Alone;
+use crate::study::{Case, Spec};
 use std::path::PathBuf;
 
 /// What the large area shows.
@@ -116,38 +113,6 @@ pub struct CurveLook {
     pub zoom: Option<(f64, f64)>,
 }
 
-/// What is known about the scenario as it stands.
-#[derive(Clone, Debug)]
-pub struct Results {
-    /// Every way, the cheapest, the landmarks.
-    pub answer: Answer,
-    /// The verdict weighed.
-    pub verdict: Verdict,
-    /// The verdict in words.
-    pub sentence: String,
-    /// Its reason in words.
-    pub why: String,
-    /// What moves it, strongest first.
-    pub shifts: Vec<String>,
-    /// Warnings.
-    pub warnings: Vec<Warning>,
-    /// The curve, one row for each column; `None` where there is no range to show.
-    pub curve: Option<CurveResult>,
-}
-
-/// The curve on screen.
-#[derive(Clone, Debug)]
-pub struct CurveResult {
-    /// The altitudes swept.
-    pub axis: Axis,
-    /// A row for each column.
-    pub rows: Vec<Row>,
-    /// The cheapest altitude.
-    pub cheapest: Option<Mark>,
-    /// The crossovers.
-    pub crossovers: Vec<Mark>,
-}
-
 /// The explorer's state.
 #[derive(Clone, Debug)]
 pub struct Model {
@@ -183,6 +148,12 @@ pub struct Model {
     pub glyphs: Glyphs,
     /// Results for the scenario as it stands.
     pub results: Results,
+    /// Number of the latest request to the worker; older answers are dropped.
+    pub asked: u64,
+    /// What the worker has to be asked next.
+    pub wanted: Option<Job>,
+    /// How far the worker is, in percent, while it works.
+    pub working: Option<u8>,
 }
 
 impl Model {
@@ -199,8 +170,8 @@ impl Model {
             |_| loaded.case.spec().clone(),
             |read| read.case.spec().clone(),
         );
-        let results = results(&loaded.case, &look, size);
-        Self {
+        let results = results::at_once(&loaded.case, &look, size);
+        let mut model = Self {
             size,
             file: FileState {
                 path,
@@ -222,7 +193,12 @@ impl Model {
             message: None,
             glyphs,
             results,
-        }
+            asked: 0,
+            wanted: None,
+            working: None,
+        };
+        model.ask_worker();
+        model
     }
 
     /// Whether the scenario differs from the file.
@@ -259,93 +235,65 @@ impl Model {
         self.way.or(self.results.answer.best).unwrap_or(Way::Direct)
     }
 
-    /// Computes everything anew for the scenario, the look and the size.
+    /// Computes everything anew for the scenario, the look and the size: at once what can be, the rest by the worker.
     pub fn recompute(&mut self) {
-        self.results = results(&self.case, &self.look, self.size);
+        self.results = results::at_once(&self.case, &self.look, self.size);
+        self.ask_worker();
     }
 
-    /// Computes the curve anew, for another look or size.
+    /// Computes the curve anew, for another look or size. The same curve is kept: a quantity is only read from it.
     pub fn recompute_curve(&mut self) {
-        self.results.curve = curve_result(&self.case, &self.results.answer, &self.look, self.size);
-    }
-}
-
-fn results(case: &Case, look: &CurveLook, size: (u16, u16)) -> Results {
-    let answer = Answer::of(case);
-    let verdict = verdict::verdict(case.setting(), &answer);
-    Results {
-        sentence: words::verdict(case, &answer, &verdict),
-        why: words::why(case, &verdict),
-        shifts: words::shifts(case, &answer, &verdict),
-        warnings: warning::warnings(case, &answer),
-        curve: curve_result(case, &answer, look, size),
-        verdict,
-        answer,
-    }
-}
-
-/// The range of target periapsis radii shown, km.
-pub fn shown_range(case: &Case, look: &CurveLook) -> Option<(f64, f64)> {
-    let (low, high) = landmarks::sensible_range(case.setting())?;
-    match look.zoom {
-        Some((from, to)) => {
-            let (from, to) = (from.max(low), to.min(high));
-            if from < to {
-                Some((from, to))
-            } else {
-                Some((low, high))
-            }
+        let axis = results::axis(&self.case, &self.look, self.size);
+        if self.results.curve.as_ref().map(|curve| curve.axis) != axis {
+            self.recompute();
         }
-        None => Some((low, high)),
     }
-}
 
-fn curve_result(
-    case: &Case,
-    answer: &Answer,
-    look: &CurveLook,
-    size: (u16, u16),
-) -> Option<CurveResult> {
-    let (low, high) = shown_range(case, look)?;
-    let (mut from, to) = (case.altitude_km(low), case.altitude_km(high));
-    if look.x_log {
-        // A floor at the surface has no logarithm; a ten-thousandth of the range is as good as zero there.
-        from = from.max(1e-4 * to);
+    fn ask_worker(&mut self) {
+        self.asked += 1;
+        let grade = self.results.grade;
+        self.working = (!grade.is_final()).then_some(0);
+        self.wanted = (!grade.is_final()).then(|| Job {
+            number: self.asked,
+            case: self.case.clone(),
+            look: self.look,
+            size: self.size,
+        });
     }
-    let columns = plot::columns(usize::from(layout::areas(size, 0, 0, 1).lens.width));
-    let axis = Axis::new(
-        knob::by_id(KnobId::TargetAltitude),
-        from,
-        to,
-        columns,
-        look.x_log,
-    )
-    .ok()?;
-    let rows = curve::curve(case, &axis);
-    let value_at = |way: Way, radius: f64| {
-        let plan = way
-            .plan(&landmarks::at_radius(case.setting(), radius))
-            .ok()?;
-        let y = look.quantity.of(&(&plan).into())?;
-        Some(Mark {
-            x: case.altitude_km(radius),
-            y,
-        })
-    };
-    let marks = &answer.landmarks;
-    Some(CurveResult {
-        axis,
-        rows,
-        cheapest: marks
-            .cheapest
-            .and_then(|cheapest| value_at(Way::Direct, cheapest.radius_km)),
-        crossovers: marks
-            .crossovers
-            .iter()
-            .filter_map(|crossover| {
-                value_at(crossover.below, crossover.radius_km)
-                    .or_else(|| value_at(crossover.above, crossover.radius_km))
-            })
-            .collect(),
-    })
+
+    /// Takes what the worker reports, unless something newer has been asked.
+    pub fn hear(&mut self, report: Report) {
+        match report {
+            Report::Progress { number, percent } if number == self.asked => {
+                self.working = self.working.map(|before| before.max(percent));
+            }
+            Report::Results { number, results } if number == self.asked => {
+                if results.grade.is_final() {
+                    self.working = None;
+                }
+                self.results = *results;
+            }
+            Report::Failed { number } if number == self.asked => {
+                self.working = None;
+                self.message = Some((
+                    Tone::Refused,
+                    "the integration came to an unforeseen end; what is shown is an estimate"
+                        .to_owned(),
+                ));
+            }
+            _ => {}
+        }
+    }
+
+    /// Does the worker's part here and now, on one thread. For what has no worker.
+    pub fn finish_now(&mut self) {
+        if let Some(job) = self.wanted.take()
+            && let Ok(results) = results::integrated(&job.case, &job.look, job.size, &Alone)
+        {
+            self.hear(Report::Results {
+                number: job.number,
+                results: Box::new(results),
+            });
+        }
+    }
 }

@@ -1,6 +1,6 @@
 //! Roles to styles. Colour only repeats what a glyph or a word already says.
 //!
-//! The three way colours are blue, orange and teal of middle lightness: apart for the common colour-vision deficiencies, and
+//! The way colours are blue, orange, teal and purple of middle lightness: apart for the common colour-vision deficiencies, and
 //! readable on dark and on light grounds (contrast at least 3.5 against both black and white).
 
 use crate::arrival::Way;
@@ -33,6 +33,7 @@ impl Theme {
             Way::Direct => self.tint(33),
             Way::Dip => self.tint(166),
             Way::Loop => self.tint(30),
+            Way::Steps => self.tint(133),
         }
     }
 
@@ -42,6 +43,7 @@ impl Theme {
             Role::Blank => Style::new(),
             Role::Axis | Role::Label => self.faint(),
             Role::Way(way) => self.way(way),
+            Role::Companion(_) => self.faint(),
             Role::Here => Style::new().add_modifier(Modifier::BOLD),
             Role::Cheapest | Role::Crossover => Style::new().add_modifier(Modifier::BOLD),
         }

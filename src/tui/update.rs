@@ -3,6 +3,8 @@
 use super::action::Action;
 use super::keymap;
 use super::model::{Lens, Model, Overlay, Question, Tone};
+use super::results::{self, Grade};
+use super::worker::Report;
 use crate::arrival::Way;
 use crate::report::plot::Quantity;
 use crate::report::words;
@@ -27,6 +29,8 @@ pub enum Msg {
     Resumed,
     /// A save ended.
     Saved(Result<Written, SaveError>),
+    /// The worker reports.
+    Reported(Report),
     /// A reload ended.
     Reloaded(Result<Box<Loaded>, String>),
 }
@@ -84,6 +88,10 @@ pub fn update(model: &mut Model, msg: Msg) -> Vec<Effect> {
             Vec::new()
         }
         Msg::Resumed => vec![Effect::Repaint],
+        Msg::Reported(report) => {
+            model.hear(report);
+            Vec::new()
+        }
         Msg::Saved(result) => {
             saved(model, result);
             Vec::new()
@@ -210,11 +218,35 @@ pub fn act(model: &mut Model, action: Action) -> Vec<Effect> {
             model.scroll = 0;
             model.overlay = Some(Overlay::Help);
         }
-        Action::Cancel => {}
+        Action::Cancel => cancel(model),
         Action::Suspend => return vec![Effect::Suspend],
         Action::Quit => return quit(model),
     }
     Vec::new()
+}
+
+/// Stops the integration; the estimate stays, and says so.
+fn cancel(model: &mut Model) {
+    if model.working.take().is_some() {
+        model.asked += 1;
+        model.wanted = None;
+        let text = match model.results.grade {
+            Grade::Coarse => {
+                "integration stopped; what is shown is coarse (any change starts it again)"
+            }
+            _ => "integration stopped; what is shown is an estimate (any change starts it again)",
+        };
+        say(model, Tone::Done, text);
+    }
+}
+
+/// Added to what is said about a place that is not yet known to the digit.
+fn so_far(grade: Grade) -> &'static str {
+    if grade.is_final() {
+        ""
+    } else {
+        "; not yet integrated: press again when the first line says so"
+    }
 }
 
 fn page(model: &Model) -> usize {
@@ -241,7 +273,7 @@ fn select(model: &mut Model, by: isize) {
 
 fn turn(model: &mut Model, turns: f64, coarseness: f64) {
     let knob = model.selected();
-    let resolved = knob.resolved(&model.case);
+    let resolved = knob.resolved(&model.case, &model.results.answer);
     let value = match knob.turned(&model.case, turns, coarseness, resolved) {
         Ok(value) => value,
         Err(why) => return say(model, Tone::Refused, why.to_string()),
@@ -324,6 +356,7 @@ fn to_cheapest(model: &mut Model) {
             "direct can be flown nowhere in the range, so there is no cheapest altitude",
         ),
         Some(cheapest) => {
+            let grade = model.results.grade;
             go_to_radius(model, cheapest.radius_km);
             let altitude = words::altitude(model.case.altitude_km(cheapest.radius_km));
             let held = if cheapest.at_border {
@@ -335,8 +368,9 @@ fn to_cheapest(model: &mut Model) {
                 model,
                 Tone::Done,
                 format!(
-                    "cheapest direct altitude {altitude}, {}{held}",
-                    words::dv(cheapest.dv_km_s)
+                    "cheapest direct altitude {altitude}, {}{held}{}",
+                    words::dv(cheapest.dv_km_s),
+                    so_far(grade)
                 ),
             );
         }
@@ -380,9 +414,11 @@ fn to_crossover(model: &mut Model) {
             } else {
                 String::new()
             };
+            let grade = model.results.grade;
             go_to_radius(model, crossover.radius_km);
             let altitude = words::altitude(model.case.altitude_km(crossover.radius_km));
-            say(model, Tone::Done, format!("{name}, at {altitude}{again}"));
+            let text = format!("{name}, at {altitude}{again}{}", so_far(grade));
+            say(model, Tone::Done, text);
         }
     }
 }
@@ -410,8 +446,12 @@ fn open(model: &mut Model, lens: Lens) {
 }
 
 fn next_way(model: &mut Model) {
-    let at = model.shown_way() as usize;
-    model.way = Way::TABLE.get((at + 1) % Way::COUNT).map(|entry| entry.way);
+    let shown: Vec<Way> = Way::shown(model.case.setting())
+        .map(|entry| entry.way)
+        .collect();
+    let now = model.shown_way();
+    let at = shown.iter().position(|way| *way == now).unwrap_or(0);
+    model.way = shown.get((at + 1) % shown.len().max(1)).copied();
     if model.lens != Lens::Burns {
         open(model, Lens::Burns);
     }
@@ -444,7 +484,7 @@ fn next_quantity(model: &mut Model) {
 /// Narrows or widens the range shown round the marker, by a factor in the logarithm of the radius.
 fn zoom(model: &mut Model, factor: f64) {
     let (Some((low, high)), Some((whole_low, whole_high))) = (
-        super::model::shown_range(&model.case, &model.look),
+        results::shown_range(&model.case, &model.look),
         landmarks::sensible_range(model.case.setting()),
     ) else {
         return say(

@@ -46,7 +46,7 @@ fn screen(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
     let areas = layout::areas(
         size,
         lines.len(),
-        table::HEIGHT,
+        table::height(model),
         footer::height(model, usize::from(area.width)),
     );
     header::draw(model, theme, areas.header, buffer);

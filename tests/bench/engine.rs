@@ -1,7 +1,7 @@
 //! How fast the engine is. `cargo bench`; quote medians, machines are noisy.
 
 use divan::{Bencher, black_box};
-use stoop::arrival::{Choice, Limits, PlaneDemand, Policy, Setting, Way};
+use stoop::arrival::{Burns, Choice, Limits, Passes, PlaneDemand, Policy, Setting, Way};
 use stoop::physics::conic::Orbit;
 use stoop::physics::transfer::{self, Approach, ParentTransfer, TransferInput};
 use stoop::report::plot::Glyphs;
@@ -41,6 +41,8 @@ fn setting(turn_deg: f64) -> Setting {
             longest_burn_s: f64::INFINITY,
         },
         vehicle: None,
+        burns: Burns::Impulsive,
+        passes: Passes::Best,
         policy: Policy {
             margin: 0.05,
             per_start_km_s: 0.0,

@@ -148,7 +148,7 @@ fn the_json_of_a_brief_has_every_key_of_the_contract() {
         );
         let ways = brief["ways"].as_array().expect("ways");
         let names: Vec<&str> = ways.iter().filter_map(|way| way["way"].as_str()).collect();
-        assert_eq!(names, ["direct", "dip", "loop"]);
+        assert_eq!(names, ["direct", "dip", "loop", "steps"]);
         for way in ways {
             has(
                 way,
@@ -384,7 +384,7 @@ fn csv_has_the_columns_of_the_contract() {
         .records()
         .map(|record| record.expect("sound CSV"))
         .collect();
-    assert_eq!(rows.len(), 27);
+    assert_eq!(rows.len(), 9 * 4);
     assert_eq!(&rows[0][0], "20");
     assert_eq!(&rows[0][2], "false");
     assert!(rows[0][3].is_empty() && rows[0][13].contains("under the floor"));
@@ -443,7 +443,7 @@ fn maps_have_both_columns_in_every_format() {
     };
     let csv = stdout(&run(&args("csv")));
     assert!(csv.starts_with("target_altitude_km,v_inf_km_s,way,"));
-    assert_eq!(csv.lines().count(), 1 + 7 * 5 * 3);
+    assert_eq!(csv.lines().count(), 1 + 7 * 5 * 4);
     let svg = stdout(&run(&args("svg")));
     assert!(
         svg.starts_with("<svg ") && svg.ends_with("</svg>\n") && 30 < svg.matches("<rect").count()
@@ -459,7 +459,7 @@ fn maps_have_both_columns_in_every_format() {
         "--format",
         "svg",
     ]));
-    assert_eq!(one.matches("<path").count(), 3);
+    assert_eq!(one.matches("<path").count(), 4);
 }
 
 #[test]

@@ -55,8 +55,17 @@ fn direct_into_exact_circles() {
         let v_inf_sq = get(&case, "inputs", "vinf").powi(2);
         let approach = |_: f64| Some(v_inf_sq);
         let r = get(&case, "inputs", "r");
-        let goal = Orbit { periapsis_km: r, apoapsis_km: r };
-        let task = braking(get(&case, "inputs", "mu"), &approach, goal, engine(&case), Steering::AgainstVelocity);
+        let goal = Orbit {
+            periapsis_km: r,
+            apoapsis_km: r,
+        };
+        let task = braking(
+            get(&case, "inputs", "mu"),
+            &approach,
+            goal,
+            engine(&case),
+            Steering::AgainstVelocity,
+        );
         let (burn, track) = solved(&task);
         let output = |name: &str| get(&case, "outputs", name);
         agree(burn.dv_km_s, output("dv"), 1e-9);
@@ -84,7 +93,10 @@ fn dip_into_exact_circles() {
         let mut apoapsis = r;
         let mut last: Option<(HeldBurn, Track, HeldBurn)> = None;
         for _ in 0..6 {
-            let goal = Orbit { periapsis_km: q, apoapsis_km: apoapsis };
+            let goal = Orbit {
+                periapsis_km: q,
+                apoapsis_km: apoapsis,
+            };
             let braking = braking(gm, &approach, goal, first_engine, Steering::AgainstVelocity);
             let (first, track) = solved(&braking);
             let raising = Task {
@@ -94,8 +106,14 @@ fn dip_into_exact_circles() {
                 speed_before_km_s: conic::apoapsis_speed_km_s(gm, q, r),
                 speed_after_km_s: conic::circular_speed_km_s(gm, r),
                 turn_rad: 0.0,
-                goal: Orbit { periapsis_km: r, apoapsis_km: r },
-                engine: Engine { mass_kg: first.mass_after_kg, ..first_engine },
+                goal: Orbit {
+                    periapsis_km: r,
+                    apoapsis_km: r,
+                },
+                engine: Engine {
+                    mass_kg: first.mass_after_kg,
+                    ..first_engine
+                },
                 steering: Steering::AgainstVelocity,
             };
             let second = raising.solve(None).expect("closes");
@@ -114,7 +132,18 @@ fn dip_into_exact_circles() {
         agree(apoapsis, output("ra_coast"), 1e-8);
         agree(first.controls.lead_s, output("lead1"), 1e-3);
         agree(first.controls.open_km, output("q_in"), 1e-5);
-        agree(track.lowest_radius_km, output("rmin"), 1e-4);
+        // The reference's is the least over the moments it kept, so above the true one (1e-3 at 10 N, where its steps are longest).
+        assert!(track.lowest_radius_km <= output("rmin") * (1.0 + 1e-6));
+        let goal = Orbit {
+            periapsis_km: q,
+            apoapsis_km: apoapsis,
+        };
+        let task = braking(gm, &approach, goal, first_engine, Steering::AgainstVelocity);
+        let dense = (0..=2000)
+            .filter_map(|k| task.state_after(&first, f64::from(k) / 2000.0))
+            .map(|(state, _)| state[0].hypot(state[1]))
+            .fold(f64::INFINITY, f64::min);
+        agree(track.lowest_radius_km, dense, 1e-6);
     }
 }
 
@@ -127,8 +156,17 @@ fn ellipses_with_the_periapsis_held() {
         let input = |name: &str| get(&case, "inputs", name);
         let v_inf_sq = input("vinf").powi(2);
         let approach = |_: f64| Some(v_inf_sq);
-        let goal = Orbit { periapsis_km: input("hit_rp"), apoapsis_km: input("ra") };
-        let task = braking(input("mu"), &approach, goal, engine(&case), Steering::AgainstVelocity);
+        let goal = Orbit {
+            periapsis_km: input("hit_rp"),
+            apoapsis_km: input("ra"),
+        };
+        let task = braking(
+            input("mu"),
+            &approach,
+            goal,
+            engine(&case),
+            Steering::AgainstVelocity,
+        );
         let (burn, _) = solved(&task);
         let expected = get(&case, "outputs", "dv");
         assert!(burn.dv_km_s <= expected * (1.0 + 1e-9));

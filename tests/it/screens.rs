@@ -13,8 +13,25 @@ use stoop::tui::theme::Theme;
 use stoop::tui::update::{Effect, Msg, update};
 use stoop::tui::view::view;
 
+/// The built-in scenario, its burns taking no time: every key then leaves final results.
 fn model(size: (u16, u16)) -> Model {
-    Model::new(file::built_in(), None, size, Glyphs::Ascii)
+    let text = built_in_text().replace("burns: Finite", "burns: Impulsive");
+    Model::new(loaded(&text), None, size, Glyphs::Ascii)
+}
+
+/// The built-in scenario as it is, its burns integrated.
+fn lasting(size: (u16, u16)) -> Model {
+    let mut model = Model::new(file::built_in(), None, size, Glyphs::Ascii);
+    model.finish_now();
+    model
+}
+
+fn built_in_text() -> String {
+    file::built_in().text
+}
+
+fn loaded(text: &str) -> file::Loaded {
+    file::parse("built-in", text).unwrap_or_else(|faults| panic!("{faults}"))
 }
 
 fn press(model: &mut Model, code: KeyCode) -> Vec<Effect> {

@@ -1,6 +1,6 @@
 //! What several modules need: a setting without limits, and a small random walk with a fixed seed.
 
-use stoop::arrival::{Choice, Limits, PlaneDemand, Policy, Setting};
+use stoop::arrival::{Burns, Choice, Limits, Passes, PlaneDemand, Policy, Setting};
 use stoop::physics::conic::Orbit;
 use stoop::physics::transfer::Approach;
 
@@ -25,6 +25,8 @@ pub(crate) fn open_setting(gm: f64, v_inf: f64, periapsis_km: f64, apoapsis_km: 
             longest_burn_s: f64::INFINITY,
         },
         vehicle: None,
+        burns: Burns::Impulsive,
+        passes: Passes::Best,
         policy: Policy {
             margin: 0.0,
             per_start_km_s: 0.0,

@@ -73,16 +73,18 @@ fn every_layer_uses_only_what_stands_to_its_left() {
                 "numerics", "physics", "arrival", "study", "scenario", "visible",
             ],
         ),
+        // Threads: the engine starts none itself.
+        ("crew", &["study"]),
         (
             "cli",
             &[
-                "numerics", "physics", "arrival", "study", "scenario", "report", "visible",
+                "numerics", "physics", "arrival", "study", "scenario", "report", "visible", "crew",
             ],
         ),
         (
             "tui",
             &[
-                "numerics", "physics", "arrival", "study", "scenario", "report", "visible",
+                "numerics", "physics", "arrival", "study", "scenario", "report", "visible", "crew",
             ],
         ),
     ];

@@ -70,7 +70,7 @@ fn cold(task: &Task, full: &Level) -> Result<HeldBurn, NoBurn> {
     let arc = full.scale_s * (task.gm / task.open_km.powi(3)).sqrt();
     let mut strength = (arc / SMALL_ARC).max(1.0);
     let mut found = None;
-    for _ in 0..8 {
+    for _ in 0..5 {
         if let Some(level) = Level::new(task, strength, care(strength)) {
             let mut point = level.guess();
             if level.settle(&mut point).is_some() {
@@ -78,12 +78,14 @@ fn cold(task: &Task, full: &Level) -> Result<HeldBurn, NoBurn> {
                 break;
             }
         }
-        strength *= 2.0;
+        strength *= 3.0;
     }
     let Some(mut point) = found else {
-        return Err(no_approach(task, task.open_km).unwrap_or(NoBurn::NeverCloses {
-            closes_at: f64::INFINITY,
-        }));
+        return Err(
+            no_approach(task, task.open_km).unwrap_or(NoBurn::NeverCloses {
+                closes_at: f64::INFINITY,
+            }),
+        );
     };
     let mut ratio = 0.6_f64;
     let mut before: Option<(f64, Point)> = None;
@@ -157,8 +159,7 @@ impl Point {
     /// Extrapolates two solutions to a weaker engine: losses go with the square of the burn time.
     fn beyond(&self, old: &Point, old_strength: f64, strength: f64, next: f64) -> Self {
         let square = |strength: f64| strength.powi(-2);
-        let share =
-            (square(next) - square(strength)) / (square(strength) - square(old_strength));
+        let share = (square(next) - square(strength)) / (square(strength) - square(old_strength));
         let share = share.min(2.5);
         Self {
             at: std::array::from_fn(|k| self.at[k] + share * (self.at[k] - old.at[k])),
@@ -192,11 +193,7 @@ struct Here {
 impl<'a> Level<'a> {
     /// `None` where the burn would take nearly the whole mass.
     fn new(task: &Task<'a>, strength: f64, care: Care) -> Option<Self> {
-        let (before, after, turn) = (
-            task.speed_before_km_s,
-            task.speed_after_km_s,
-            task.turn_rad,
-        );
+        let (before, after, turn) = (task.speed_before_km_s, task.speed_after_km_s, task.turn_rad);
         let engine = Engine {
             thrust_n: task.engine.thrust_n * strength,
             ..task.engine
@@ -458,20 +455,15 @@ impl<'a> Level<'a> {
     }
 
     /// Curvature of the Lagrangian by differences of the Jacobian along the null space; a round value across it.
-    fn curvature(
-        &self,
-        at: &Variables,
-        rows: &Rows,
-        basis: &Basis,
-    ) -> Option<[[f64; ALL]; ALL]> {
+    fn curvature(&self, at: &Variables, rows: &Rows, basis: &Basis) -> Option<[[f64; ALL]; ALL]> {
         const H: f64 = 1e-3;
         let n = self.active.len();
         let mut columns = [[0.0; ALL]; ALL];
-        for k in self.misses..n {
+        for (k, column) in columns.iter_mut().enumerate().take(n).skip(self.misses) {
             let moved = self.moved(at, &basis.q[k], H);
             let there = self.here(&moved)?;
             let moved_rows = self.jacobian(&moved, &there)?;
-            columns[k] = basis.lagrangian_change(rows, &moved_rows).map(|c| c / H);
+            *column = basis.lagrangian_change(rows, &moved_rows).map(|c| c / H);
         }
         // In the basis of the null space, made symmetric.
         let mut small = [[0.0; ALL]; ALL];
@@ -614,8 +606,8 @@ impl Basis {
             }
             if let Some(part) = positive_solve(&shifted, &slopes, free) {
                 let mut step = [0.0; ALL];
-                for a in 0..free {
-                    subtract(&mut step, &self.q[self.rank + a], part[a]);
+                for (a, part) in part.iter().enumerate().take(free) {
+                    subtract(&mut step, &self.q[self.rank + a], *part);
                 }
                 let gain = 0.5 * (0..free).map(|a| slopes[a] * part[a]).sum::<f64>();
                 return (step, gain);
@@ -643,7 +635,7 @@ fn positive_solve(matrix: &[[f64; 4]; 4], right: &[f64; 4], n: usize) -> Option<
         for j in 0..=i {
             let rest = matrix[i][j] - (0..j).map(|k| l[i][k] * l[j][k]).sum::<f64>();
             if i == j {
-                if !(0.0 < rest) {
+                if rest <= 0.0 || rest.is_nan() {
                     return None;
                 }
                 l[i][i] = rest.sqrt();

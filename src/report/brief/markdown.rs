@@ -1,7 +1,7 @@
 //! The brief as Markdown (CommonMark with tables). Foreign text is escaped.
 
 use super::{Brief, colophon, facts, flags, landmark_lines, way_line};
-use crate::arrival::{Burn, Plan};
+use crate::arrival::{Burn, Plan, Way};
 use crate::report::plot::Glyphs;
 use crate::report::{rerun, sources, words};
 use crate::study::Case;
@@ -49,6 +49,15 @@ fn write(brief: &Brief, out: &mut String) -> Result {
     }
     ways(brief, out)?;
     burns(brief, out)?;
+    if !brief.engine.is_empty() {
+        writeln!(out, "\n## Engine\n")?;
+        list(out, &brief.engine)?;
+        writeln!(out, "```text")?;
+        for line in brief.stop_curve(78) {
+            writeln!(out, "{line}")?;
+        }
+        writeln!(out, "```")?;
+    }
     writeln!(out, "\n## Landmarks\n")?;
     list(out, &landmark_lines(brief))?;
     writeln!(out, "## Cost of every target altitude\n\n```text")?;
@@ -57,7 +66,16 @@ fn write(brief: &Brief, out: &mut String) -> Result {
     }
     writeln!(
         out,
-        "```\n\n`=` direct, `v` dip, `o` loop, `*` cheapest direct, `X` crossover, `|` here, gap: not flyable\n\n## Warnings\n"
+        "```\n\n{}, `*` cheapest direct, `X` crossover, `|` here, gap: not flyable{}\n\n## Warnings\n",
+        Way::shown(brief.case.setting())
+            .map(|entry| format!("`{}` {}", entry.glyph, entry.name))
+            .collect::<Vec<_>>()
+            .join(", "),
+        if brief.case.setting().lasting().is_some() {
+            ", `.` without the finite-burn loss"
+        } else {
+            ""
+        }
     )?;
     if brief.warnings.is_empty() {
         list(out, &["none"])?;
@@ -103,9 +121,9 @@ fn head(brief: &Brief, out: &mut String) -> Result {
 fn ways(brief: &Brief, out: &mut String) -> Result {
     writeln!(
         out,
-        "\n## Ways\n\n| way | cost m/s | dv m/s | propellant | with margin | days | starts | longest burn | captured after |\n|---|--:|--:|--:|--:|--:|--:|--:|--:|"
+        "\n## Ways\n\n| way | cost m/s | dv m/s | loss m/s | propellant | with margin | days | starts | longest burn | captured after |\n|---|--:|--:|--:|--:|--:|--:|--:|--:|--:|"
     )?;
-    for (way, plan) in &brief.answer.ways {
+    for (way, plan) in brief.answer.shown(brief.case.setting()) {
         let name = if brief.answer.best == Some(*way) {
             format!("**{}**", way.name())
         } else {
@@ -115,7 +133,7 @@ fn ways(brief: &Brief, out: &mut String) -> Result {
             Ok(plan) => writeln!(out, "| {name} | {} |", figures(plan))?,
             Err(not) => writeln!(
                 out,
-                "| {name} | not flyable: {} | | | | | | | |",
+                "| {name} | not flyable: {} | | | | | | | | |",
                 escape(&words::reasons(brief.case, not))
             )?,
         }
@@ -131,6 +149,7 @@ fn figures(plan: &Plan) -> String {
     [
         format!("{:.1}", 1e3 * plan.cost_km_s),
         format!("{:.1}", 1e3 * plan.dv_km_s),
+        format!("{:.1}", 1e3 * plan.loss_km_s()),
         optional(used.map(|used| words::kg(used.propellant_kg))),
         optional(used.map(|used| words::kg(used.propellant_with_margin_kg))),
         words::days(plan.duration_s),
@@ -161,13 +180,24 @@ fn burns(brief: &Brief, out: &mut String) -> Result {
         out,
         "| way | burn | at altitude | before km/s | after km/s | dv m/s | turn | propellant | time | leaves |\n|---|--:|--:|--:|--:|--:|--:|--:|--:|---|"
     )?;
-    for plan in plans {
+    for plan in &plans {
         for (k, burn) in plan.burns.iter().enumerate() {
             let cells = burn_cells(brief.case, burn);
             writeln!(out, "| {} | {} | {cells} |", plan.way.name(), k + 1)?;
         }
     }
-    Ok(())
+    let flown: Vec<String> = plans
+        .iter()
+        .flat_map(|plan| {
+            plan.burns.iter().enumerate().filter_map(|(k, burn)| {
+                words::flown(brief.case, k, burn).map(|text| format!("{}, {text}", plan.way.name()))
+            })
+        })
+        .collect();
+    if !flown.is_empty() {
+        writeln!(out)?;
+    }
+    list(out, &flown)
 }
 
 fn burn_cells(case: &Case, burn: &Burn) -> String {

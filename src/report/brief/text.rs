@@ -21,6 +21,15 @@ pub(super) fn render(brief: &Brief, glyphs: Glyphs) -> String {
     ways(brief, glyphs, &mut page);
     page.heading("Burns");
     burns(brief, &mut page);
+    if !brief.engine.is_empty() {
+        page.heading("Engine");
+        for line in &brief.engine {
+            page.item(&ascii(line));
+        }
+        for line in brief.stop_curve(WIDTH) {
+            page.line(&line);
+        }
+    }
     page.heading("Landmarks");
     for line in landmark_lines(brief) {
         page.item(&line);
@@ -29,7 +38,7 @@ pub(super) fn render(brief: &Brief, glyphs: Glyphs) -> String {
     for line in brief.curve(WIDTH, 18, glyphs) {
         page.line(&line);
     }
-    page.paragraph(&legend(glyphs));
+    page.paragraph(&legend(brief.case, glyphs));
     page.heading("Warnings");
     if brief.warnings.is_empty() {
         page.item("none");
@@ -82,24 +91,43 @@ fn symbol(way: Way, glyphs: Glyphs) -> char {
         (Glyphs::Fine, Way::Direct) => '\u{2500}',
         (Glyphs::Fine, Way::Dip) => '\u{b7}',
         (Glyphs::Fine, Way::Loop) => 'o',
+        (Glyphs::Fine, Way::Steps) => ':',
     }
 }
 
-fn legend(glyphs: Glyphs) -> String {
-    let ways: Vec<String> = Way::TABLE
-        .iter()
+fn legend(case: &Case, glyphs: Glyphs) -> String {
+    let ways: Vec<String> = Way::shown(case.setting())
         .map(|entry| format!("{} {}", symbol(entry.way, glyphs), entry.name))
         .collect();
+    let lasting = if case.setting().lasting().is_some() {
+        ", . without the finite-burn loss"
+    } else {
+        ""
+    };
     format!(
-        "{}, * cheapest direct, X crossover, | here, gap: not flyable",
+        "{}, * cheapest direct, X crossover, | here, gap: not flyable{lasting}",
         ways.join(", ")
     )
 }
 
 fn ways(brief: &Brief, glyphs: Glyphs, page: &mut Page) {
-    page.line("way          cost       dv propellant      with   days starts   longest captured");
-    page.line("              m/s      m/s              margin                     burn    after");
-    for (way, plan) in &brief.answer.ways {
+    let lasting = brief.case.setting().lasting().is_some();
+    if lasting {
+        page.line(
+            "way         cost      dv   loss   propel-     with  days starts longest captured",
+        );
+        page.line(
+            "             m/s     m/s    m/s      lant   margin                 burn    after",
+        );
+    } else {
+        page.line(
+            "way          cost       dv propellant      with   days starts   longest captured",
+        );
+        page.line(
+            "              m/s      m/s              margin                     burn    after",
+        );
+    }
+    for (way, plan) in brief.answer.shown(brief.case.setting()) {
         let mark = if brief.answer.best == Some(*way) {
             '<'
         } else {
@@ -107,6 +135,7 @@ fn ways(brief: &Brief, glyphs: Glyphs, page: &mut Page) {
         };
         let head = format!("{} {:<6}{mark}", symbol(*way, glyphs), way.name());
         match plan {
+            Ok(plan) if lasting => page.line(&format!("{head}{}", lasting_figures(plan))),
             Ok(plan) => page.line(&format!("{head}{}", figures(plan))),
             Err(not) => page.hanging(
                 &format!("{head} "),
@@ -130,6 +159,27 @@ fn figures(plan: &Plan) -> String {
         " {:>7.1} {:>8.1} {:>10} {:>9} {:>6} {:>6} {:>9} {:>8}",
         1e3 * plan.cost_km_s,
         1e3 * plan.dv_km_s,
+        optional(used.map(|used| words::kg(used.propellant_kg))),
+        optional(used.map(|used| words::kg(used.propellant_with_margin_kg))),
+        words::days(plan.duration_s),
+        plan.starts(),
+        optional(used.map(|used| words::time(used.longest_burn_s))),
+        optional(
+            plan.captured_share
+                .map(|share| format!("{:.0} %", 100.0 * share))
+        ),
+    )
+}
+
+/// The same with the finite-burn loss.
+fn lasting_figures(plan: &Plan) -> String {
+    let used = plan.consumption;
+    let optional = |value: Option<String>| value.unwrap_or_else(|| "-".to_owned());
+    format!(
+        " {:>6.1} {:>7.1} {:>6.1} {:>9} {:>8} {:>5} {:>6} {:>7} {:>8}",
+        1e3 * plan.cost_km_s,
+        1e3 * plan.dv_km_s,
+        1e3 * plan.loss_km_s(),
         optional(used.map(|used| words::kg(used.propellant_kg))),
         optional(used.map(|used| words::kg(used.propellant_with_margin_kg))),
         words::days(plan.duration_s),
@@ -168,6 +218,9 @@ fn burn_line(case: &Case, k: usize, burn: &Burn) -> String {
     } else {
         format!(", turn {}", words::degrees(burn.turn_rad))
     };
+    if let Some(flown) = words::flown(case, k, burn) {
+        return flown;
+    }
     format!(
         "burn {} at {}: {} ({:.4} to {}){turn}{engine}; leaves {} x {}",
         k + 1,

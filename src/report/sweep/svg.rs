@@ -85,12 +85,13 @@ fn stroke(way: Way) -> (&'static str, &'static str) {
         Way::Direct => ("#0072b2", "none"),
         Way::Dip => ("#d55e00", "9 5"),
         Way::Loop => ("#007a5a", "2 5"),
+        Way::Steps => ("#a3457f", "2 4 9 4"),
     }
 }
 
 fn legend(sweep: &Sweep, paper: &mut Paper) -> Result {
     let mut x = LEFT;
-    for entry in Way::TABLE {
+    for entry in Way::shown(sweep.case.setting()) {
         let (colour, dash) = stroke(entry.way);
         if sweep.second.is_some() {
             paper.cell(x, 34.0, 30.0, 13.0, colour)?;

@@ -39,8 +39,8 @@ fn write(sweep: &Sweep, out: &mut String) -> Result {
 fn curve(sweep: &Sweep, out: &mut String) -> Result {
     writeln!(out, "cost in m/s; propellant of the cheapest way\n")?;
     write!(out, "{:>VALUE$}", title(&sweep.first))?;
-    for entry in Way::TABLE {
-        write!(out, " {:>11}", format!("{} {}", entry.glyph, entry.name))?;
+    for entry in Way::shown(sweep.case.setting()) {
+        write!(out, " {:>8}", format!("{} {}", entry.glyph, entry.name))?;
     }
     writeln!(out, "  cheapest  propellant")?;
     for cell in &sweep.cells {
@@ -63,10 +63,10 @@ fn row(sweep: &Sweep, row: &Row, out: &mut String) -> Result {
         }
         Row::Asked(point) => {
             write!(out, "{:>VALUE$}", value(&sweep.first, point.x))?;
-            for way in &point.ways {
-                match way {
-                    Ok(sample) => write!(out, " {:>11.1}", 1e3 * sample.cost_km_s)?,
-                    Err(_) => write!(out, " {:>11}", "-")?,
+            for entry in Way::shown(sweep.case.setting()) {
+                match &point.ways[entry.way as usize] {
+                    Ok(sample) => write!(out, " {:>8.1}", 1e3 * sample.cost_km_s)?,
+                    Err(_) => write!(out, " {:>8}", "-")?,
                 }
             }
             let propellant = point
@@ -205,8 +205,7 @@ fn map(sweep: &Sweep, second: &Axis, out: &mut String) -> Result {
     // One value at each end, with a gap between them even under a narrow map.
     let gap = width.saturating_sub(from.len() + to.len()).max(2);
     writeln!(out, "{:>10}  {from}{}{to}", "", " ".repeat(gap))?;
-    let legend: Vec<String> = Way::TABLE
-        .iter()
+    let legend: Vec<String> = Way::shown(sweep.case.setting())
         .map(|entry| format!("{} {}", entry.glyph, entry.name))
         .collect();
     let legend = format!(

@@ -30,9 +30,10 @@ pub(super) fn faults(spec: &Spec, broken: &[String]) -> Vec<Fault> {
     }
     let parts: [(&[&str], Spec); 5] = [
         (
-            &["burns"],
+            &["burns", "vehicle"],
             Spec {
                 burns: spec.burns,
+                vehicle: spec.vehicle,
                 ..harmless()
             },
         ),

@@ -4,8 +4,8 @@ use super::reader::{Reader, optional};
 use crate::scenario::tree::{Kind, Node};
 use crate::study::field::field_at;
 use crate::study::spec::{
-    AltitudeChoice, ArrivalSpec, BodySpec, BrakingSpec, Burns, CapSpec, LimitsSpec, PlaneSpec,
-    PolicySpec, ShapeSpec, Spec, Steering, TargetSpec, VehicleSpec, defaults,
+    AltitudeChoice, ArrivalSpec, BodySpec, BrakingSpec, Burns, CapSpec, LimitsSpec, PassesChoice,
+    PlaneSpec, PolicySpec, ShapeSpec, Spec, Steering, TargetSpec, VehicleSpec, defaults,
 };
 
 /// Values without a fault, for what is missing or broken, so that the rest can still be looked at.
@@ -174,12 +174,15 @@ impl Reader {
         if !self.is_group(value, "braking") {
             return braking;
         }
-        self.fields(value, "braking", &["brake", "loop_apoapsis"]);
+        self.fields(value, "braking", &["brake", "loop_apoapsis", "steps"]);
         if let Some(brake) = optional(value, "brake") {
             braking.brake = self.altitude_choice(brake, "braking.brake");
         }
         if let Some(apoapsis) = optional(value, "loop_apoapsis") {
             braking.loop_apoapsis = self.altitude_choice(apoapsis, "braking.loop_apoapsis");
+        }
+        if let Some(steps) = optional(value, "steps") {
+            braking.steps = self.passes_choice(steps);
         }
         braking
     }
@@ -191,6 +194,23 @@ impl Reader {
             _ => {
                 self.no_variant(value, path, &["Best", "AltitudeKm(100.0)"]);
                 AltitudeChoice::Best
+            }
+        }
+    }
+
+    fn passes_choice(&mut self, value: &Node) -> PassesChoice {
+        let path = "braking.steps";
+        match (value.variant(), &value.kind) {
+            (Some("Best"), Kind::Word(_)) => PassesChoice::Best,
+            (Some("Passes"), _) => {
+                let number = self.inner(value, path);
+                let path = "braking.steps.Passes";
+                self.whole(value, path, number)
+                    .map_or(PassesChoice::Best, PassesChoice::Passes)
+            }
+            _ => {
+                self.no_variant(value, path, &["Best", "Passes(3)"]);
+                PassesChoice::Best
             }
         }
     }
@@ -240,9 +260,14 @@ impl Reader {
     fn starts(&mut self, value: &Node) -> u32 {
         let path = "limits.most_starts";
         let number = self.number(value, path);
+        self.whole(value, path, number)
+            .unwrap_or(defaults::LIMITS.most_starts)
+    }
+
+    fn whole(&mut self, value: &Node, path: &str, number: f64) -> Option<u32> {
         let whole = number.fract() == 0.0 && (0.0..=f64::from(u32::MAX)).contains(&number);
         if whole {
-            return number as u32;
+            return Some(number as u32);
         }
         let range = field_at(path).map_or_else(String::new, |field| field.range().to_string());
         self.fault(
@@ -250,7 +275,7 @@ impl Reader {
             path,
             format!("is {number:?}; allowed is a whole number, {range}"),
         );
-        defaults::LIMITS.most_starts
+        None
     }
 
     fn vehicle(&mut self, value: &Node) -> Option<VehicleSpec> {

@@ -463,6 +463,7 @@ mod tests {
                         braking: BrakingSpec {
                             brake: brakes.0,
                             loop_apoapsis: brakes.1,
+                            steps: PassesChoice::Best,
                         },
                         limits,
                         vehicle,

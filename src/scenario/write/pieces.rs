@@ -1,8 +1,8 @@
 //! A `Spec` as a tree of written pieces, in the order of the file format.
 
 use crate::study::spec::{
-    AltitudeChoice, ArrivalSpec, BodySpec, CapSpec, Departure, LimitsSpec, PlaneSpec, ShapeSpec,
-    Spec, TargetSpec, TransferApoapsis,
+    AltitudeChoice, ArrivalSpec, BodySpec, CapSpec, Departure, LimitsSpec, PassesChoice, PlaneSpec,
+    ShapeSpec, Spec, TargetSpec, TransferApoapsis,
 };
 use std::fmt::Debug;
 
@@ -84,6 +84,13 @@ fn group(fields: Fields) -> Piece {
     Piece::Group { name: "", fields }
 }
 
+fn passes(choice: PassesChoice) -> Piece {
+    match choice {
+        PassesChoice::Best => Piece::Value("Best".to_owned()),
+        PassesChoice::Passes(passes) => Piece::Value(format!("Passes({passes})")),
+    }
+}
+
 /// The whole scenario.
 pub(super) fn pieces(spec: &Spec) -> Piece {
     let mut fields = vec![
@@ -98,6 +105,7 @@ pub(super) fn pieces(spec: &Spec) -> Piece {
             group(vec![
                 ("brake", choice(spec.braking.brake)),
                 ("loop_apoapsis", choice(spec.braking.loop_apoapsis)),
+                ("steps", passes(spec.braking.steps)),
             ]),
         ),
         ("limits", limits(&spec.limits)),

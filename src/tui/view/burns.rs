@@ -3,11 +3,12 @@
 use super::put_page;
 use crate::arrival::{Plan, Way};
 use crate::physics::asymptote;
-use crate::report::words;
 use crate::report::words::wrap;
+use crate::report::{stops, words};
 use crate::study::Case;
 use crate::study::spec::PlaneSpec;
 use crate::tui::model::Model;
+use crate::tui::results::Grade;
 use crate::tui::theme::Theme;
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
@@ -50,6 +51,7 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
             }
             put(String::new());
             totals(&model.case, plan, &mut put);
+            engine(model, plan, width, &mut put);
         }
         Some(Err(not)) => {
             put("not flyable:".to_owned());
@@ -94,10 +96,13 @@ fn burn(case: &Case, plan: &Plan, k: usize, put: &mut impl FnMut(String)) {
     let Some(burn) = plan.burns.get(k) else {
         return;
     };
+    let brakes = burn.speed_after_km_s < burn.speed_before_km_s;
     let what = match (plan.way, k) {
         (Way::Direct, _) => "brake into the target",
+        (Way::Steps, _) if brakes && k + 1 == plan.starts() => "brake into the target",
+        (Way::Steps, _) if brakes => "brake, one pass of several",
         (_, 0) => "brake",
-        (_, 1) => "raise the periapsis",
+        (Way::Steps, _) | (_, 1) => "raise the periapsis",
         _ => "brake into the target",
     };
     put(format!(
@@ -123,6 +128,9 @@ fn burn(case: &Case, plan: &Plan, k: usize, put: &mut impl FnMut(String)) {
             words::time(duration)
         ));
     }
+    if let Some(flown) = words::flown_short(case, burn) {
+        put(format!("   {flown}"));
+    }
     let orbit = burn.orbit_after;
     let (low, high) = (
         case.altitude_km(orbit.periapsis_km),
@@ -147,9 +155,42 @@ fn burn(case: &Case, plan: &Plan, k: usize, put: &mut impl FnMut(String)) {
                 "   captured after {:.1} % of this burn{}",
                 100.0 * share,
                 plan.captured_after_s
-                    .map_or_else(String::new, |seconds| format!(", {}", words::time(seconds)))
+                    .map_or_else(String::new, |seconds| format!(
+                        ", {seconds:.0} s after ignition"
+                    ))
             )),
             None => put("   this burn does not capture".to_owned()),
+        }
+    }
+}
+
+/// What a review asks about the engine, for the way shown.
+fn engine(model: &Model, plan: &Plan, width: usize, put: &mut impl FnMut(String)) {
+    let case = &model.case;
+    if case.setting().lasting().is_none() {
+        return;
+    }
+    put(String::new());
+    let results = &model.results;
+    if results.grade != Grade::Integrated {
+        put(
+            "engine questions (early stop, late ignition, weak thrust): when integrated".to_owned(),
+        );
+        return;
+    }
+    let questions = results
+        .questions
+        .iter()
+        .find(|(way, _)| *way == plan.way)
+        .map(|(_, questions)| questions);
+    put("engine".to_owned());
+    for line in words::engine(case, plan, questions, &results.divisions) {
+        put(format!("   {line}"));
+    }
+    if let Some(questions) = questions {
+        put(String::new());
+        for line in stops::lines(case, questions, width.min(80), 9) {
+            put(line);
         }
     }
 }

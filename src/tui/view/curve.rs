@@ -3,6 +3,7 @@
 use crate::report::plot::{self, Plot};
 use crate::study::knob::{KnobId, Value, by_id};
 use crate::tui::model::Model;
+use crate::tui::results::CurveResult;
 use crate::tui::theme::Theme;
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
@@ -23,6 +24,11 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
         Ok(Value::Number(altitude)) => Some(altitude),
         _ => None,
     };
+    let crossovers: Vec<_> = curve
+        .crossovers
+        .iter()
+        .filter_map(|place| CurveResult::mark(place, model.look.quantity))
+        .collect();
     let picture = plot::draw(
         &Plot {
             rows: &curve.rows,
@@ -31,8 +37,11 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
             quantity: model.look.quantity,
             y_log: model.look.y_log,
             here,
-            cheapest: curve.cheapest,
-            crossovers: &curve.crossovers,
+            cheapest: curve
+                .cheapest
+                .as_ref()
+                .and_then(|place| CurveResult::mark(place, model.look.quantity)),
+            crossovers: &crossovers,
             glyphs: model.glyphs,
         },
         usize::from(area.width),
@@ -60,7 +69,7 @@ fn legend(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
             x += text.len() as u16;
         }
     };
-    for entry in crate::arrival::Way::TABLE {
+    for entry in crate::arrival::Way::shown(model.case.setting()) {
         let best = model.results.answer.best == Some(entry.way);
         let style = theme.way(entry.way);
         let style = if best {
@@ -84,6 +93,9 @@ fn legend(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
         .as_ref()
         .is_some_and(|curve| !curve.crossovers.is_empty())
     {
-        write("X crossover", theme.faint());
+        write("X crossover  ", theme.faint());
+    }
+    if model.case.setting().lasting().is_some() {
+        write(". no loss", theme.faint());
     }
 }

@@ -30,7 +30,10 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
     if let Some(departure) = journey.departure_dv_km_s {
         parts.push(format!("departure {}", words::dv(departure)));
     }
-    let burns = "impulsive burns";
+    let burns = match model.working {
+        Some(percent) => format!("{} {percent} %", model.results.grade.words()),
+        None => model.results.grade.words().to_owned(),
+    };
     let width = usize::from(area.width);
     let room = width.saturating_sub(burns.len() + 3);
     // What does not fit is left out whole, from the end; only a long file name is cut.
@@ -46,5 +49,5 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
     buffer.set_style(area, style);
     buffer.set_stringn(area.x, area.y, text, width, style);
     let at = area.right().saturating_sub(burns.len() as u16 + 1);
-    buffer.set_stringn(at, area.y, burns, burns.len(), style);
+    buffer.set_stringn(at, area.y, &burns, burns.len(), style);
 }

@@ -91,8 +91,9 @@ fn draw_knob(model: &Model, knob: &Knob, theme: Theme, area: Rect, buffer: &mut 
 fn shown(model: &Model, knob: &Knob) -> String {
     match knob.read(&model.case) {
         Err(_) => "-".to_owned(),
-        Ok(Value::Best) => match knob.resolved(&model.case) {
-            Some(resolved) => format!("best {}", words::altitude(resolved)),
+        Ok(Value::Best) => match knob.resolved(&model.case, &model.results.answer) {
+            Some(resolved) if knob.is_altitude() => format!("best {}", words::altitude(resolved)),
+            Some(resolved) => format!("best {resolved}"),
             None => "best".to_owned(),
         },
         Ok(Value::Number(number)) => {

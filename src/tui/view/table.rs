@@ -4,13 +4,16 @@ use crate::arrival::Way;
 use crate::report::words;
 use crate::tui::layout::fit;
 use crate::tui::model::Model;
+use crate::tui::results::Grade;
 use crate::tui::theme::Theme;
 use ratatui::buffer::Buffer;
 use ratatui::layout::Rect;
 use ratatui::style::Style;
 
 /// Lines the table takes.
-pub(super) const HEIGHT: usize = 1 + Way::COUNT;
+pub(super) fn height(model: &Model) -> usize {
+    1 + Way::shown(model.case.setting()).count()
+}
 
 /// Columns: title, width, and whether it stays on a narrow screen.
 const COLUMNS: &[(&str, usize)] = &[
@@ -25,12 +28,18 @@ const COLUMNS: &[(&str, usize)] = &[
     ("final mass", 11),
 ];
 
+/// The column that burns which take time add after the velocity change.
+const LOSS: (&str, usize) = ("loss", 7);
+
 pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
     let width = usize::from(area.width);
     let name_width = 10;
     let mut used = name_width;
-    let columns: Vec<&(&str, usize)> = COLUMNS
+    let lasting = model.case.setting().lasting().is_some();
+    let columns: Vec<&(&str, usize)> = COLUMNS[..2]
         .iter()
+        .chain(lasting.then_some(&LOSS))
+        .chain(&COLUMNS[2..])
         .take_while(|(_, cells)| {
             used += cells;
             used <= width
@@ -39,7 +48,13 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
     if area.height == 0 {
         return;
     }
-    let mut head = format!(" {:<w$}", "way", w = name_width - 1);
+    // The grade of the numbers stands with them, not only in the first line.
+    let grade = match model.results.grade {
+        Grade::Impulsive | Grade::Integrated => "way",
+        Grade::Estimated => "estimate",
+        Grade::Coarse => "way",
+    };
+    let mut head = format!(" {grade:<w$}", w = name_width - 1);
     for (title, cells) in &columns {
         head.push_str(&format!("{title:>cells$}"));
     }
@@ -47,8 +62,7 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
     for ((way, plan), row) in model
         .results
         .answer
-        .ways
-        .iter()
+        .shown(model.case.setting())
         .zip(area.y + 1..area.bottom())
     {
         let entry = way.entry();
@@ -71,9 +85,8 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
             Ok(plan) => {
                 let optional = |value: Option<String>| value.unwrap_or_else(|| "-".to_owned());
                 let used = plan.consumption;
+                let loss = lasting.then(|| cost(plan.loss_km_s()));
                 let values = [
-                    cost(plan.cost_km_s),
-                    cost(plan.dv_km_s),
                     optional(used.map(|used| words::kg(used.propellant_kg))),
                     words::days(plan.duration_s),
                     plan.starts().to_string(),
@@ -85,6 +98,10 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
                     words::degrees(plan.turn_rad),
                     optional(used.map(|used| words::kg(used.final_mass_kg))),
                 ];
+                let values = [cost(plan.cost_km_s), cost(plan.dv_km_s)]
+                    .into_iter()
+                    .chain(loss)
+                    .chain(values);
                 columns
                     .iter()
                     .zip(values)

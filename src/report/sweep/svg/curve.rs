@@ -28,7 +28,7 @@ pub(super) fn draw(sweep: &Sweep, paper: &mut Paper) -> Result {
     };
     paper.vertical(&y, "cost, m/s")?;
     here(sweep, &x, paper)?;
-    for entry in Way::TABLE {
+    for entry in Way::shown(sweep.case.setting()) {
         way(sweep, entry.way, (&x, &y), paper)?;
     }
     if axis.knob.id == KnobId::TargetAltitude {
