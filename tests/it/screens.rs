@@ -9,9 +9,11 @@ use stoop::report::plot::Glyphs;
 use stoop::scenario::file;
 use stoop::study::knob::{self, KnobId, Value};
 use stoop::tui::model::{Lens, Model, Overlay, Question};
+use stoop::tui::results::Grade;
 use stoop::tui::theme::Theme;
 use stoop::tui::update::{Effect, Msg, update};
 use stoop::tui::view::view;
+use stoop::tui::worker::{Report, Worker};
 
 /// The built-in scenario, its burns taking no time: every key then leaves final results.
 fn model(size: (u16, u16)) -> Model {
@@ -90,6 +92,107 @@ fn screens_at_three_sizes() {
 }
 
 #[test]
+fn lasting_burns_at_three_sizes() {
+    for size in [(80, 24), (120, 40), (60, 20)] {
+        let mut model = lasting(size);
+        insta::assert_snapshot!(format!("lasting-curve-{}x{}", size.0, size.1), text(&model));
+        model.lens = Lens::Burns;
+        insta::assert_snapshot!(format!("lasting-burns-{}x{}", size.0, size.1), text(&model));
+    }
+}
+
+#[test]
+fn an_estimate_says_that_it_is_one() {
+    let mut model = Model::new(file::built_in(), None, (120, 40), Glyphs::Ascii);
+    assert_eq!(model.results.grade, Grade::Estimated);
+    assert_eq!(model.working, Some(0));
+    assert!(text(&model).contains("finite burns: estimate 0 %"));
+    assert!(text(&model).contains("estimate "), "the table says it too");
+    let estimate = model
+        .results
+        .answer
+        .plan(Way::Direct)
+        .expect("flyable")
+        .dv_km_s;
+    model.finish_now();
+    assert_eq!(
+        (model.results.grade, model.working),
+        (Grade::Integrated, None)
+    );
+    let integrated = model
+        .results
+        .answer
+        .plan(Way::Direct)
+        .expect("flyable")
+        .dv_km_s;
+    assert!(estimate != integrated && (estimate / integrated - 1.0).abs() < 1e-2);
+    assert!(!text(&model).contains("estimate"));
+    // A change is an estimate again, and asks for another integration; an older one's report is dropped.
+    let old = Report::Results {
+        number: model.asked,
+        results: Box::new(model.results.clone()),
+    };
+    press(&mut model, KeyCode::Right);
+    assert_eq!(model.results.grade, Grade::Estimated);
+    update(&mut model, Msg::Reported(old));
+    assert_eq!(model.results.grade, Grade::Estimated);
+    // Esc stops it, says so, and what was under way is no longer heard.
+    let job = model.wanted.clone().expect("asked");
+    press(&mut model, KeyCode::Esc);
+    assert_eq!(model.working, None);
+    assert!(text(&model).contains("integration stopped"));
+    update(
+        &mut model,
+        Msg::Reported(Report::Progress {
+            number: job.number,
+            percent: 50,
+        }),
+    );
+    assert_eq!(model.working, None);
+    // A new quantity is read from the curve there is.
+    model.finish_now();
+    let before = model.asked;
+    press(&mut model, KeyCode::Char('y'));
+    assert_eq!(model.asked, before);
+}
+
+/// Coarse first, then integrated; what the worker finds is what one thread finds; the newest of many requests is answered.
+#[test]
+fn the_worker_answers_the_newest_request() {
+    let (sender, reports) = std::sync::mpsc::channel();
+    let mut worker = Worker::start(move |report| sender.send(report).is_ok());
+    let mut model = Model::new(file::built_in(), None, (80, 24), Glyphs::Ascii);
+    for _ in 0..10 {
+        worker.ask(model.wanted.take().expect("asked"));
+        press(&mut model, KeyCode::Right);
+    }
+    let last = model.wanted.clone().expect("asked");
+    worker.ask(last.clone());
+    let mut grades = Vec::new();
+    while model.results.grade != Grade::Integrated {
+        let report = reports
+            .recv_timeout(std::time::Duration::from_secs(60))
+            .expect("a report");
+        if let Report::Results { number, results } = &report
+            && *number == last.number
+        {
+            grades.push(results.grade);
+        }
+        update(&mut model, Msg::Reported(report));
+    }
+    assert_eq!(grades, [Grade::Coarse, Grade::Integrated]);
+    let shared = model.results.clone();
+    model.wanted = Some(last);
+    model.finish_now();
+    assert_eq!(shared.answer, model.results.answer);
+    assert_eq!(shared.verdict, model.results.verdict);
+    assert_eq!(
+        shared.curve.map(|curve| curve.rows),
+        model.results.curve.clone().map(|curve| curve.rows)
+    );
+}
+
+#[test]
 fn help_and_prompts() {
     let mut with_help = model((80, 24));
     press(&mut with_help, KeyCode::Char('?'));
@@ -111,6 +214,12 @@ fn every_size_from_one_cell_up_draws_in_every_state() {
                 model
             })
             .collect();
+        for lens in [Lens::Curve, Lens::Burns] {
+            let mut model = lasting((80, 24));
+            model.lens = lens;
+            states.push(model);
+        }
+        states.push(Model::new(file::built_in(), None, (80, 24), Glyphs::Ascii));
         for keys in ["?", "123", "S", "s"] {
             let mut model = model((80, 24));
             type_keys(&mut model, keys);
