@@ -133,6 +133,176 @@ mod arc {
     }
 }
 
+/// Burns that hold the orbit they leave: the three cases that `finite.py` computes with scipy.
+mod held {
+    use super::*;
+    use stoop::physics::conic;
+    use stoop::physics::held_burn::{Engine, Start, Steering, Task};
+
+    struct Held {
+        gm: f64,
+        v_inf: f64,
+        goal: (f64, f64),
+        engine: (f64, f64, f64),
+        steering: Steering,
+    }
+
+    fn solve(bencher: Bencher, held: Held) {
+        let v_inf_sq = held.v_inf * held.v_inf;
+        let approach = move |_: f64| Some(v_inf_sq);
+        let (periapsis_km, apoapsis_km) = held.goal;
+        let (thrust_n, isp_s, mass_kg) = held.engine;
+        let task = Task {
+            gm: held.gm,
+            start: Start::Hyperbola(&approach),
+            open_km: periapsis_km,
+            speed_before_km_s: conic::hyperbola_speed_km_s(held.gm, v_inf_sq, periapsis_km),
+            speed_after_km_s: conic::periapsis_speed_km_s(held.gm, periapsis_km, apoapsis_km),
+            turn_rad: 0.0,
+            goal: Orbit {
+                periapsis_km,
+                apoapsis_km,
+            },
+            engine: Engine {
+                thrust_n,
+                exhaust_km_s: isp_s * 9.806_65e-3,
+                mass_kg,
+            },
+            steering: held.steering,
+        };
+        bencher.bench_local(|| black_box(&task).solve(None));
+    }
+
+    fn mars(thrust_n: f64, steering: Steering) -> Held {
+        Held {
+            gm: 42_828.375,
+            v_inf: 2.65,
+            goal: (3696.19, 38_396.19),
+            engine: (thrust_n, 317.0, 2000.0),
+            steering,
+        }
+    }
+
+    #[divan::bench]
+    fn mars_4000_n(bencher: Bencher) {
+        solve(bencher, mars(4000.0, Steering::AgainstVelocity));
+    }
+
+    #[divan::bench]
+    fn mars_400_n(bencher: Bencher) {
+        solve(bencher, mars(400.0, Steering::AgainstVelocity));
+    }
+
+    #[divan::bench]
+    fn mars_400_n_turning(bencher: Bencher) {
+        solve(bencher, mars(400.0, Steering::TurningAttitude));
+    }
+
+    #[divan::bench]
+    fn moon_22_n(bencher: Bencher) {
+        let held = Held {
+            gm: 4902.8,
+            v_inf: 0.85,
+            goal: (1837.4, 10_000.0),
+            engine: (22.0, 220.0, 150.0),
+            steering: Steering::AgainstVelocity,
+        };
+        solve(bencher, held);
+    }
+}
+
+/// Whole ways and curves with burns that last: Moon, 22 N, brake at 100 km.
+mod lasting {
+    use super::*;
+    use stoop::crew::Threads;
+    use stoop::physics::held_burn::Steering;
+    use stoop::physics::vehicle::Vehicle;
+    use stoop::study::watch::gather;
+    use stoop::tui::model::CurveLook;
+    use stoop::tui::results;
+
+    fn small_engine() -> Setting {
+        Setting {
+            brake: Choice::Radius(1837.4),
+            vehicle: Some(Vehicle {
+                dry_mass_kg: 60.0,
+                propellant_kg: 90.0,
+                thrust_n: 22.0,
+                isp_s: 220.0,
+            }),
+            burns: Burns::Integrated(Steering::AgainstVelocity),
+            ..setting(0.0)
+        }
+    }
+
+    #[divan::bench(args = ["direct", "dip", "loop", "steps"])]
+    fn one_point(bencher: Bencher, name: &str) {
+        let setting = small_engine();
+        let way = Way::TABLE
+            .iter()
+            .find(|entry| entry.name == name)
+            .map_or(Way::Direct, |entry| entry.way);
+        bencher.bench_local(|| way.figures(black_box(&setting)));
+    }
+
+    #[divan::bench]
+    fn dip_best_brake(bencher: Bencher) {
+        let setting = Setting {
+            brake: Choice::Best,
+            ..small_engine()
+        };
+        bencher.bench_local(|| Way::Dip.figures(black_box(&setting)));
+    }
+
+    /// 240 points of direct and dip on two threads, then the landmarks of both (loop and steps kept out by the starts).
+    #[divan::bench]
+    fn curve_of_240_points_direct_and_dip_with_landmarks(bencher: Bencher) {
+        let mut setting = small_engine();
+        setting.limits.most_starts = 2;
+        setting.passes = Passes::Number(7);
+        let crew = Threads::number(2);
+        bencher.bench_local(|| {
+            let points = gather(&crew, 240, |k| {
+                let radius = 1900.0 + 100.0 * k as f64;
+                let here = landmarks::at_radius(&setting, radius);
+                (Way::Direct.figures(&here), Way::Dip.figures(&here))
+            });
+            let marks = landmarks::landmarks_with(&setting, 120, &crew);
+            (points, marks)
+        });
+    }
+
+    const LOOK: CurveLook = CurveLook {
+        x_log: true,
+        y_log: false,
+        quantity: stoop::report::plot::Quantity::Cost,
+        zoom: None,
+    };
+
+    /// What a key does at once: everything by estimate.
+    #[divan::bench]
+    fn estimate_on_screen(bencher: Bencher) {
+        let case = file::built_in().case;
+        bencher.bench_local(|| results::at_once(black_box(&case), &LOOK, (200, 60)));
+    }
+
+    /// The first integrated picture of the built-in scenario, all four ways, two threads.
+    #[divan::bench]
+    fn coarse_on_screen(bencher: Bencher) {
+        let case = file::built_in().case;
+        let crew = Threads::number(2);
+        bencher.bench_local(|| results::coarse(black_box(&case), &LOOK, (200, 60), &crew));
+    }
+
+    /// All of it, all four ways, two threads.
+    #[divan::bench]
+    fn integrated_on_screen(bencher: Bencher) {
+        let case = file::built_in().case;
+        let crew = Threads::number(2);
+        bencher.bench_local(|| results::integrated(black_box(&case), &LOOK, (200, 60), &crew));
+    }
+}
+
 /// One arrival from an orbit round the parent, Earth to Moon from 400 km.
 mod approach {
     use super::*;
