@@ -29,12 +29,10 @@ impl Threads {
         }
     }
 
-    /// One for each core, stopped when the brake is set.
-    pub fn with_brake(stop: Arc<AtomicBool>) -> Self {
-        Self {
-            stop,
-            ..Self::all()
-        }
+    /// One for each core but one, which is left to whoever waits for keys; stopped when the brake is set.
+    pub fn behind_a_screen(stop: Arc<AtomicBool>) -> Self {
+        let count = Self::all().count.saturating_sub(1).max(1);
+        Self { count, stop }
     }
 
     /// What stops them when it is set.

@@ -25,6 +25,10 @@ pub enum Action {
     Enter,
     /// Leave the value to the program.
     Best,
+    /// Burns that last, or take no time.
+    ToggleBurns,
+    /// The next way of pointing the engine.
+    NextSteering,
     /// Go to the cheapest altitude.
     ToCheapest,
     /// Go to the nearest crossover, then to the next.
@@ -234,6 +238,22 @@ pub const ACTIONS: &[Entry] = &[
         "the nearest crossover, again for the next one",
         "crossover",
         Group::Places,
+    ),
+    entry(
+        A::ToggleBurns,
+        "burns-last",
+        &[Char('f')],
+        "burns finite (integrated with the engine) or impulsive",
+        "",
+        Group::Knobs,
+    ),
+    entry(
+        A::NextSteering,
+        "steering",
+        &[Char('F')],
+        "steering: against velocity, fixed attitude, turning attitude",
+        "",
+        Group::Knobs,
     ),
     entry(
         A::ToCheapest,

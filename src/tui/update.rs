@@ -12,7 +12,8 @@ use crate::scenario::file::{Loaded, SaveError, Stamp};
 use crate::scenario::write;
 use crate::study::entry;
 use crate::study::knob::{self, KnobId, Refused, Value};
-use crate::study::{Case, landmarks};
+use crate::study::spec::{Burns, Steering};
+use crate::study::{Case, Spec, landmarks};
 use crossterm::event::{KeyCode, KeyEvent, KeyModifiers};
 use std::path::PathBuf;
 
@@ -189,6 +190,8 @@ pub fn act(model: &mut Model, action: Action) -> Vec<Effect> {
             });
         }
         Action::Best => set(model, model.knob, Value::Best),
+        Action::ToggleBurns => toggle_burns(model),
+        Action::NextSteering => next_steering(model),
         Action::ToCheapest => to_cheapest(model),
         Action::ToCrossover => to_crossover(model),
         Action::Undo => step_back(model),
@@ -299,6 +302,61 @@ fn set(model: &mut Model, id: KnobId, value: Value) {
     match knob::by_id(id).set(&model.case, value) {
         Ok(case) => change(model, case),
         Err(why) => say(model, Tone::Refused, why.to_string()),
+    }
+}
+
+/// Burns that last, or take no time: the same scenario seen with and without the loss.
+fn toggle_burns(model: &mut Model) {
+    let mut spec = model.case.spec().clone();
+    let (burns, said) = match spec.burns {
+        Burns::Impulsive => (
+            Burns::Finite,
+            "burns are finite: integrated with the engine",
+        ),
+        Burns::Finite => (
+            Burns::Impulsive,
+            "burns are impulsive: they take no time and lose nothing",
+        ),
+    };
+    spec.burns = burns;
+    changed_spec(model, spec, said);
+}
+
+fn next_steering(model: &mut Model) {
+    let mut spec = model.case.spec().clone();
+    let Some(vehicle) = &mut spec.vehicle else {
+        return say(
+            model,
+            Tone::Refused,
+            "there is no vehicle whose engine could be pointed; add one to the file",
+        );
+    };
+    let (steering, said) = match vehicle.steering {
+        Steering::AgainstVelocity => (Steering::FixedAttitude, "steering: fixed attitude"),
+        Steering::FixedAttitude => (Steering::TurningAttitude, "steering: turning attitude"),
+        Steering::TurningAttitude => (Steering::AgainstVelocity, "steering: against the velocity"),
+    };
+    vehicle.steering = steering;
+    let said = match spec.burns {
+        Burns::Finite => said.to_owned(),
+        Burns::Impulsive => format!("{said} (it matters once burns are finite)"),
+    };
+    changed_spec(model, spec, said);
+}
+
+fn changed_spec(model: &mut Model, spec: Spec, said: impl Into<String>) {
+    match Case::new(spec) {
+        Ok(case) => {
+            change(model, case);
+            say(model, Tone::Done, said);
+        }
+        Err(faults) => {
+            let all: Vec<String> = faults
+                .iter()
+                .map(|fault| format!("{} {}", fault.path, fault.message))
+                .collect();
+            say(model, Tone::Refused, all.join("; "));
+        }
     }
 }
 

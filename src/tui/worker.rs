@@ -96,7 +96,7 @@ impl Worker {
 
 /// Works on one job; `false` where nobody listens any more.
 fn work(job: &Job, brake: Arc<AtomicBool>, tell: &(impl Fn(Report) -> bool + Sync)) -> bool {
-    let threads = Threads::with_brake(brake);
+    let threads = Threads::behind_a_screen(brake);
     let give = |results: Results| {
         tell(Report::Results {
             number: job.number,

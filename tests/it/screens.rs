@@ -156,6 +156,41 @@ fn an_estimate_says_that_it_is_one() {
     assert_eq!(model.asked, before);
 }
 
+#[test]
+fn burns_and_steering_are_switched_and_taken_back() {
+    let mut model = lasting((120, 40));
+    press(&mut model, KeyCode::Char('f'));
+    assert_eq!(model.results.grade, Grade::Impulsive);
+    assert!(!text(&model).contains("steps"), "nothing to divide");
+    press(&mut model, KeyCode::Char('u'));
+    model.finish_now();
+    assert_eq!(model.results.grade, Grade::Integrated);
+    let before = model
+        .results
+        .answer
+        .plan(Way::Dip)
+        .expect("flyable")
+        .loss_km_s();
+    press(&mut model, KeyCode::Char('F'));
+    assert!(text(&model).contains("steering: fixed attitude"));
+    model.finish_now();
+    let after = model
+        .results
+        .answer
+        .plan(Way::Dip)
+        .expect("flyable")
+        .loss_km_s();
+    // A fixed attitude loses about twice as much at this length of burn.
+    assert!(1.3 * before < after, "{before} {after}");
+    // Without an engine there is nothing to integrate.
+    let bare = "(format: 1, body: Known(\"Moon\"), arrival: Asymptote(v_inf_km_s: 0.9), target: (shape: Circular(altitude_km: 500.0)))";
+    let mut model = Model::new(loaded(bare), None, (120, 40), Glyphs::Ascii);
+    press(&mut model, KeyCode::Char('f'));
+    assert!(text(&model).contains("there is no vehicle"));
+    press(&mut model, KeyCode::Char('F'));
+    assert!(text(&model).contains("there is no vehicle"));
+}
+
 /// Coarse first, then integrated; what the worker finds is what one thread finds; the newest of many requests is answered.
 #[test]
 fn the_worker_answers_the_newest_request() {
