@@ -4,6 +4,7 @@ pub mod brief;
 pub mod checks;
 mod json;
 pub mod lists;
+pub mod path;
 pub mod plot;
 mod rerun;
 pub mod sources;

@@ -9,6 +9,7 @@ pub mod entry;
 pub mod field;
 pub mod knob;
 pub mod landmarks;
+pub mod lean;
 pub mod spec;
 pub mod verdict;
 pub mod warning;

@@ -51,7 +51,7 @@ pub struct Crossover {
 pub enum CrossoverKind {
     /// The two cost the same there.
     Tie,
-    /// One of the two stops (or starts) being flyable there.
+    /// One of the two stops (or starts) being flyable there, or its cost jumps because a limit changes how it is flown.
     Limit,
 }
 
@@ -157,6 +157,9 @@ fn grid(setting: &Setting, low: f64, high: f64, points: usize) -> Vec<f64> {
     grid.dedup();
     grid
 }
+
+/// Two costs further apart than this, relative, are no tie: the searches for ties end far closer.
+const TIED_RELATIVE: f64 = 1e-7;
 
 /// Relative widths at which searches for a tie and for the border of a limit stop.
 pub(super) fn sharpness(setting: &Setting) -> (f64, f64) {
@@ -312,6 +315,11 @@ fn between(setting: &Setting, left: &Node, right: &Node, depth: u32, found: &mut
         }
     };
     let middle = Node::ask(setting, radius);
+    // A change of sign is a tie only where the two do cost the same there; a curve that jumps changes it too.
+    let kind = match middle.cost(below).zip(middle.cost(above)) {
+        Some((a, b)) if TIED_RELATIVE * a.max(b) < (a - b).abs() => CrossoverKind::Limit,
+        _ => kind,
+    };
     if let Some(best) = middle.best
         && best != below
         && best != above

@@ -304,6 +304,14 @@ pub const ACTIONS: &[Entry] = &[
         Group::View,
     ),
     entry(
+        A::Open(Lens::Path),
+        "path",
+        &[Char('p')],
+        "path: a picture of a way, to scale",
+        "",
+        Group::View,
+    ),
+    entry(
         A::Open(Lens::Burns),
         "burns",
         &[Char('b')],

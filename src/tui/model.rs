@@ -17,6 +17,8 @@ use std::path::PathBuf;
 pub enum Lens {
     /// The cost curve.
     Curve,
+    /// A picture of one way, to scale.
+    Path,
     /// The burns of one way.
     Burns,
     /// Reasons, warnings, assumptions, sources.
@@ -30,6 +32,11 @@ impl Lens {
             Lens::Curve,
             "curve",
             "what every target altitude costs, way by way",
+        ),
+        (
+            Lens::Path,
+            "path",
+            "one way to scale: body, hyperbola, orbits, burns, floor and cap",
         ),
         (
             Lens::Burns,
@@ -136,6 +143,8 @@ pub struct Model {
     pub look: CurveLook,
     /// The way the burns lens shows; `None` follows the cheapest.
     pub way: Option<Way>,
+    /// How close the path lens looks: 1 shows all orbits.
+    pub path_zoom: f64,
     /// First line shown in lenses and pages that scroll.
     pub scroll: usize,
     /// What lies over the screen.
@@ -187,6 +196,7 @@ impl Model {
             lens: Lens::Curve,
             look,
             way: None,
+            path_zoom: 1.0,
             scroll: 0,
             overlay: None,
             pending_path: None,

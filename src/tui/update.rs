@@ -6,6 +6,7 @@ use super::model::{Lens, Model, Overlay, Question, Tone};
 use super::results::{self, Grade};
 use super::worker::Report;
 use crate::arrival::Way;
+use crate::report::path::{Scene, View};
 use crate::report::plot::Quantity;
 use crate::report::words;
 use crate::scenario::file::{Loaded, SaveError, Stamp};
@@ -206,6 +207,9 @@ pub fn act(model: &mut Model, action: Action) -> Vec<Effect> {
         }
         Action::ToggleVerticalLog => model.look.y_log = !model.look.y_log,
         Action::NextQuantity => next_quantity(model),
+        Action::ZoomIn if model.lens == Lens::Path => zoom_path(model, 2.0),
+        Action::ZoomOut if model.lens == Lens::Path => zoom_path(model, 0.5),
+        Action::ZoomAll if model.lens == Lens::Path => model.path_zoom = 1.0,
         Action::ZoomIn => zoom(model, 0.5),
         Action::ZoomOut => zoom(model, 2.0),
         Action::ZoomAll => {
@@ -510,7 +514,7 @@ fn next_way(model: &mut Model) {
     let now = model.shown_way();
     let at = shown.iter().position(|way| *way == now).unwrap_or(0);
     model.way = shown.get((at + 1) % shown.len().max(1)).copied();
-    if model.lens != Lens::Burns {
+    if !matches!(model.lens, Lens::Burns | Lens::Path) {
         open(model, Lens::Burns);
     }
     model.scroll = 0;
@@ -536,6 +540,29 @@ fn next_quantity(model: &mut Model) {
         model.look.quantity = *next;
         model.lens = Lens::Curve;
         model.recompute_curve();
+    }
+}
+
+/// Looks closer at the first burn or wider, from the cap down to the gap between floor and surface.
+fn zoom_path(model: &mut Model, factor: f64) {
+    let way = model.shown_way();
+    let Some(plan) = model.results.answer.plan(way) else {
+        return;
+    };
+    let scene = Scene::new(&model.case, plan);
+    let closest = View::closest_zoom(&scene);
+    let widest = View::to_the_cap(&scene, 80, 24).zoom.min(1.0);
+    let wanted = model.path_zoom * factor;
+    if (widest..=closest.max(1.0)).contains(&wanted) {
+        model.path_zoom = wanted;
+    } else if 1.0 < factor {
+        say(
+            model,
+            Tone::Refused,
+            "this is as close as there is something to see",
+        );
+    } else {
+        say(model, Tone::Refused, "this is as wide as the cap");
     }
 }
 

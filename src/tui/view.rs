@@ -7,6 +7,7 @@ mod header;
 mod help;
 mod knobs;
 mod notes;
+mod path;
 mod table;
 
 use super::layout::{self, LEAST};
@@ -52,6 +53,7 @@ fn screen(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
     header::draw(model, theme, areas.header, buffer);
     match model.lens {
         Lens::Curve => curve::draw(model, theme, areas.lens, buffer),
+        Lens::Path => path::draw(model, theme, areas.lens, buffer),
         Lens::Burns => burns::draw(model, theme, areas.lens, buffer),
         Lens::Notes => notes::draw(model, theme, areas.lens, buffer),
     }

@@ -191,6 +191,33 @@ fn burns_and_steering_are_switched_and_taken_back() {
     assert!(text(&model).contains("there is no vehicle"));
 }
 
+#[test]
+fn the_path_lens_goes_from_the_cap_to_the_periapsis() {
+    let mut model = lasting((120, 40));
+    press(&mut model, KeyCode::Char('p'));
+    assert_eq!(model.lens, Lens::Path);
+    assert!(text(&model).contains("target orbit") && text(&model).contains("thrust arc"));
+    // The ends are met and said, and nothing moves beyond them.
+    for (key, end) in [('i', "as close as"), ('o', "as wide as")] {
+        for _ in 0..60 {
+            press(&mut model, KeyCode::Char(key));
+            let _ = draw(&model);
+        }
+        let held = model.path_zoom;
+        press(&mut model, KeyCode::Char(key));
+        assert!(text(&model).contains(end), "{key}");
+        assert_eq!(model.path_zoom, held);
+    }
+    press(&mut model, KeyCode::Char('a'));
+    assert_eq!(model.path_zoom, 1.0);
+    // A way that cannot be flown says so instead.
+    while model.shown_way() != Way::Loop {
+        press(&mut model, KeyCode::Char('w'));
+    }
+    assert_eq!(model.lens, Lens::Path);
+    assert!(text(&model).contains("cannot be flown here"));
+}
+
 /// Coarse first, then integrated; what the worker finds is what one thread finds; the newest of many requests is answered.
 #[test]
 fn the_worker_answers_the_newest_request() {

