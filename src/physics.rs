@@ -11,6 +11,7 @@ pub mod catalogue;
 pub mod conic;
 pub mod held_burn;
 pub mod pole;
+mod thrust;
 pub mod thrust_arc;
 pub mod transfer;
 pub mod vehicle;

@@ -5,6 +5,10 @@
 //! textbook; vis-viva v² = 2μ/r − μ/a) and take radii that are positive and finite; the callers'
 //! types see to that.
 
+mod state;
+
+pub use state::{State, ellipse_state, hyperbola_state};
+
 use std::f64::consts::PI;
 
 /// Speed at the periapsis q of an ellipse with apoapsis Q: √(2μ Q / (q (q + Q))), km/s.

@@ -22,8 +22,7 @@ mod solve;
 pub use estimate::first_order_loss_km_s;
 pub use off_nominal::{Left, Missed};
 
-use super::conic::Orbit;
-use super::thrust_arc::State;
+use super::conic::{Orbit, State};
 use crate::numerics::tolerance::ARC_RELATIVE;
 
 /// How the engine is pointed during a burn.

@@ -1,35 +1,10 @@
 //! Thrust arcs against the reference collection (scipy DOP853 at 1e-11 to 3e-14, computed outside this project).
 
-use crate::support::agree;
+use crate::support::{agree, reference, reference_group};
 use serde_json::Value;
-use stoop::physics::thrust_arc::{
-    BestCapture, Capture, NoArc, Pointing, ShutOff, fly, hyperbola_state,
-};
+use stoop::physics::conic::hyperbola_state;
+use stoop::physics::thrust_arc::{BestCapture, Capture, NoArc, Pointing, ShutOff, fly};
 use stoop::physics::vehicle::Vehicle;
-
-fn cases(group: &str) -> Vec<Value> {
-    let all: Value =
-        serde_json::from_str(include_str!("../data/computed.json")).expect("sound JSON");
-    all["cases"]
-        .as_array()
-        .expect("cases")
-        .iter()
-        .filter(|case| case["group"] == group)
-        .cloned()
-        .collect()
-}
-
-fn case(id: &str) -> Value {
-    let all: Value =
-        serde_json::from_str(include_str!("../data/computed.json")).expect("sound JSON");
-    all["cases"]
-        .as_array()
-        .expect("cases")
-        .iter()
-        .find(|case| case["id"] == id)
-        .cloned()
-        .expect("the case")
-}
 
 fn get(case: &Value, part: &str, name: &str) -> f64 {
     case[part][name]
@@ -40,7 +15,11 @@ fn get(case: &Value, part: &str, name: &str) -> f64 {
 /// The capture of a case; propellant is nearly the whole mass, so that it never runs out.
 fn capture(case: &Value) -> Capture {
     let input = |name: &str| get(case, "inputs", name);
-    let par = |k: usize| case["inputs"]["par"][k].as_f64().unwrap_or(0.0);
+    // A given attitude stands among the inputs, an optimised one among the outputs.
+    let par = |k: usize| {
+        let of = |part: &str| case[part]["par"][k].as_f64();
+        of("inputs").or_else(|| of("outputs")).unwrap_or(0.0)
+    };
     Capture {
         gm: input("mu"),
         v_inf_sq: input("vinf").powi(2),
@@ -66,7 +45,7 @@ fn capture(case: &Value) -> Capture {
 
 #[test]
 fn arcs_at_a_fixed_ignition() {
-    let cases = cases("thrust arc at fixed ignition");
+    let cases = reference_group("thrust arc at fixed ignition");
     assert_eq!(cases.len(), 3);
     for case in cases {
         let arc = capture(&case)
@@ -88,14 +67,14 @@ fn arcs_at_a_fixed_ignition() {
 
 #[test]
 fn the_best_ignition_against_the_velocity() {
-    let case = case("opt-mars4000");
+    let case = reference("opt-mars4000");
     check_best(
         &case,
         capture(&case)
             .best_lead(get(&case, "inputs", "q"))
             .expect("captures"),
     );
-    let case = self::case("opt-mars400");
+    let case = reference("opt-mars400");
     check_best(
         &case,
         capture(&case)
@@ -104,12 +83,59 @@ fn the_best_ignition_against_the_velocity() {
     );
 }
 
+/// Fixed and turning attitudes: the reference's optimum is reproduced by its own lead and attitude, and no neighbour is cheaper.
+#[test]
+fn the_best_attitude_of_the_reference() {
+    for id in [
+        "opt-mars4000-inertial",
+        "opt-mars4000-rate",
+        "opt-moon22-inertial",
+    ] {
+        let case = reference(id);
+        let output = |name: &str| get(&case, "outputs", name);
+        let (mut best, lead) = (capture(&case), output("lead"));
+        let q = get(&case, "inputs", "q");
+        if let Pointing::Turning { offset, rate } = &mut best.pointing {
+            // The reference counts the angle from half the impulsive burn's time after ignition, we from the periapsis (found by trying; its
+            // collection does not say).
+            let used = best
+                .vehicle
+                .propellant_for_kg(best.vehicle.start_mass_kg(), output("dv_ideal_in"));
+            *offset += *rate * (lead - 0.5 * best.vehicle.burn_time_s(used));
+        }
+        let arc = best.with_lead(q, lead).expect("captures");
+        agree(arc.dv_km_s, output("dv"), 1e-9);
+        agree(arc.duration_s, output("dur"), 1e-9);
+        agree(arc.orbit.periapsis_km, output("rp_final"), 1e-7);
+        agree(arc.arc_rad.to_degrees(), output("arc_deg"), 1e-7);
+        let Pointing::Turning { offset, rate } = best.pointing else {
+            panic!("{id}: {:?}", best.pointing);
+        };
+        let turning = matches!(case["inputs"]["law"].as_str(), Some("rate"));
+        for k in 0..if turning { 3 } else { 2 } {
+            for sign in [-1.0, 1.0] {
+                // A hundredth of the lead, half a degree, a hundredth of the rate.
+                let by = |which: usize, size: f64| if k == which { sign * size } else { 0.0 };
+                let mut moved = best;
+                moved.pointing = Pointing::Turning {
+                    offset: offset + by(1, 0.01),
+                    rate: rate + by(2, 0.01 * rate),
+                };
+                let other = moved
+                    .with_lead(q, lead + by(0, 0.01 * lead))
+                    .expect("captures");
+                assert!(arc.dv_km_s < other.dv_km_s, "{id} {k} {sign}");
+            }
+        }
+    }
+}
+
 /// The reference takes the best ignition for each aim and then the aim that holds the periapsis; here the cheapest ignition is searched
 /// among those that hold it, which is what is wanted and never costs more (at Mars with 400 N 1.2 mm/s less).
 #[test]
 fn the_best_ignition_with_the_resulting_periapsis_held() {
     for (id, gain) in [("opt-mars400-hit", 2e-6), ("opt-moon22-hit", 2e-6)] {
-        let case = case(id);
+        let case = reference(id);
         let held = get(&case, "inputs", "hit_rp");
         let best = capture(&case).held(held).expect("captures");
         agree(best.arc.orbit.periapsis_km, held, 1e-10);
@@ -150,7 +176,7 @@ fn the_lowest_radius_is_the_lowest() {
         ("opt-mars4000", 3696.19, 205.567_369_952),
         ("fix-moon22", 1837.4, 1230.0),
     ] {
-        let capture = capture(&case(id));
+        let capture = capture(&reference(id));
         let whole = capture.with_lead(q, lead).expect("captures");
         let start = hyperbola_state(capture.gm, capture.v_inf_sq, q, -lead);
         let mass = capture.vehicle.start_mass_kg();
@@ -176,7 +202,7 @@ fn the_lowest_radius_is_the_lowest() {
 #[test]
 fn halving_the_accuracy_moves_no_loss() {
     // The arc at the named accuracy against the reference at 3e-14: far inside 0.01 m/s.
-    for case in cases("thrust arc at fixed ignition") {
+    for case in reference_group("thrust arc at fixed ignition") {
         let arc = capture(&case)
             .with_lead(get(&case, "inputs", "q_in"), get(&case, "inputs", "lead_s"))
             .expect("captures");
@@ -186,7 +212,7 @@ fn halving_the_accuracy_moves_no_loss() {
 
 #[test]
 fn what_cannot_be_flown_says_why() {
-    let case = case("fix-moon22");
+    let case = reference("fix-moon22");
     let mut capture = capture(&case);
     capture.vehicle.dry_mass_kg = 140.0;
     capture.vehicle.propellant_kg = 10.0;
@@ -201,7 +227,7 @@ fn what_cannot_be_flown_says_why() {
 
 #[test]
 fn a_burn_over_in_no_time_is_impulsive() {
-    let case = case("opt-mars4000");
+    let case = reference("opt-mars4000");
     let mut capture = capture(&case);
     capture.vehicle.thrust_n = 4e7;
     let best = capture.best_lead(3696.19).expect("captures");

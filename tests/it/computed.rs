@@ -2,26 +2,12 @@
 //!
 //! `tests/data/computed.json` was computed outside this project (mpmath, scipy); it says so itself.
 
-use crate::support::open_setting;
+use crate::support::{open_setting, reference_group};
 use serde_json::Value;
 use stoop::arrival::{Choice, Plan, PlaneDemand, Setting, Way};
 use stoop::physics::conic;
 use stoop::physics::transfer::{Model, ParentTransfer, TransferInput};
 use stoop::study::landmarks::{self, CrossoverKind};
-
-fn cases(group: &str) -> Vec<Value> {
-    let all: Value =
-        serde_json::from_str(include_str!("../data/computed.json")).expect("sound JSON");
-    let found: Vec<Value> = all["cases"]
-        .as_array()
-        .expect("cases")
-        .iter()
-        .filter(|case| case["group"] == group)
-        .cloned()
-        .collect();
-    assert!(!found.is_empty(), "{group}");
-    found
-}
 
 fn get(case: &Value, part: &str, name: &str) -> f64 {
     case[part][name]
@@ -73,7 +59,7 @@ fn costs_of_the_three_ways() {
         ("dip", Way::Dip),
         ("loop", Way::Loop),
     ] {
-        for case in cases(group) {
+        for case in reference_group(group) {
             let tolerance = case["rel_tol"].as_f64().expect("a tolerance");
             let plan = planned(&case, way);
             close(
@@ -129,7 +115,7 @@ fn costs_of_the_three_ways() {
 
 #[test]
 fn the_break_even_radius() {
-    for case in cases("break-even") {
+    for case in reference_group("break-even") {
         let (gm, v_inf) = (get(&case, "inputs", "mu"), get(&case, "inputs", "vinf"));
         let radius = conic::break_even_radius_km(gm, v_inf * v_inf);
         close(
@@ -160,7 +146,7 @@ fn the_break_even_radius() {
 
 #[test]
 fn cheapest_direct_orbit_of_a_given_eccentricity() {
-    for case in cases("cheapest") {
+    for case in reference_group("cheapest") {
         let input = |name: &str| get(&case, "inputs", name);
         let ratio = (1.0 + input("ecc")) / (1.0 - input("ecc"));
         let expected = get(&case, "outputs", "rp_min");
@@ -188,7 +174,7 @@ fn cheapest_direct_orbit_of_a_given_eccentricity() {
 
 #[test]
 fn every_crossover_and_no_other() {
-    for case in cases("crossover") {
+    for case in reference_group("crossover") {
         let input = |name: &str| get(&case, "inputs", name);
         let tolerance = case["rel_tol"].as_f64().expect("a tolerance");
         let ratio = (1.0 + input("ecc")) / (1.0 - input("ecc"));
@@ -243,7 +229,7 @@ fn transfer(case: &Value, model: Model) -> ParentTransfer {
 #[test]
 fn the_boundary_speed_reading() {
     // The reference takes the moon's true speed, as the boundary-speed model does.
-    for case in cases("textbook arrival") {
+    for case in reference_group("textbook arrival") {
         let boundary = transfer(&case, Model::BoundarySpeed);
         let v_inf_sq = boundary.v_inf_sq(1837.4).expect("hyperbolic");
         close(
@@ -288,7 +274,7 @@ fn the_boundary_speed_reading() {
 
 #[test]
 fn the_patched_conic() {
-    for case in cases("patched arrival") {
+    for case in reference_group("patched arrival") {
         let tolerance = case["rel_tol"].as_f64().expect("a tolerance");
         let q = get(&case, "inputs", "q");
         let output = |name: &str| get(&case, "outputs", name);
@@ -339,7 +325,7 @@ fn the_patched_conic() {
 
 #[test]
 fn the_three_body_energy() {
-    for case in cases("three-body energy") {
+    for case in reference_group("three-body energy") {
         let tolerance = case["rel_tol"].as_f64().expect("a tolerance");
         let q = get(&case, "inputs", "q");
         let output = |name: &str| get(&case, "outputs", name);
@@ -373,7 +359,7 @@ fn the_three_body_energy_against_integrated_arrivals() {
         ("threebody-400000-100--1-0", 0.006),
         ("threebody-450000-2000--1-0", 0.052),
     ];
-    let cases = cases("integrated three-body");
+    let cases = reference_group("integrated three-body");
     assert_eq!(cases.len(), found_m_s.len());
     for (case, (id, bound)) in cases.iter().zip(found_m_s) {
         assert_eq!(case["id"], id);

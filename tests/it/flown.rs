@@ -7,9 +7,8 @@
 
 use crate::support::agree;
 use stoop::physics::conic;
-use stoop::physics::thrust_arc::{
-    BestCapture, Capture, Pointing, ShutOff, State, ThrustArc, fly, hyperbola_state,
-};
+use stoop::physics::conic::{State, hyperbola_state};
+use stoop::physics::thrust_arc::{BestCapture, Capture, Pointing, ShutOff, ThrustArc, fly};
 use stoop::physics::vehicle::{STANDARD_GRAVITY_M_S2, Vehicle};
 
 /// JPL constants file (DE440), section 6.1: planet alone, km³/s²; radii section 6.2, km.
@@ -121,14 +120,26 @@ impl Insertion {
         }
         // The orbit left and the lowest point lie nearly at a constant distance below the aim: a few corrections settle them.
         let (mut aim, mut left) = (radius, radius);
-        for _ in 0..12 {
-            let best = self.capture(left).best_lead(aim).expect("captures");
+        let mut best = self.capture(left).best_lead(aim).expect("captures");
+        for round in 0..20 {
             left = best.arc.orbit.periapsis_km;
             if let Altitude::Lowest(_) = self.altitude {
                 aim += radius - best.arc.lowest_radius_km;
             }
+            let capture = self.capture(left);
+            best = if round < 10 {
+                capture.best_lead(aim).expect("captures")
+            } else {
+                // The valley is flat, so the cheapest ignition is known to some 1e-5 only, and the lowest point is not flat in it: it is kept
+                // while the aim closes.
+                BestCapture {
+                    aimed_periapsis_km: aim,
+                    arc: capture.with_lead(aim, best.lead_s).expect("captures"),
+                    ..best
+                }
+            };
         }
-        self.capture(left).best_lead(aim).expect("captures")
+        best
     }
 
     fn computed(&self) -> Burn {

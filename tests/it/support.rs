@@ -46,28 +46,25 @@ pub(crate) fn agree(found: f64, expected: f64, tolerance: f64) {
     );
 }
 
-/// The cases of one group of the reference collection (computed with mpmath and scipy, outside this project).
-pub(crate) fn reference_group(group: &str) -> Vec<serde_json::Value> {
+/// All cases of the reference collection (computed with mpmath and scipy, outside this project).
+fn references() -> Vec<serde_json::Value> {
     let all: serde_json::Value =
         serde_json::from_str(include_str!("../data/computed.json")).expect("sound JSON");
-    all["cases"]
-        .as_array()
-        .expect("cases")
-        .iter()
-        .filter(|case| case["group"] == group)
-        .cloned()
-        .collect()
+    all["cases"].as_array().expect("cases").clone()
+}
+
+/// The cases of one group of the reference collection; there is at least one.
+pub(crate) fn reference_group(group: &str) -> Vec<serde_json::Value> {
+    let mut cases = references();
+    cases.retain(|case| case["group"] == group);
+    assert!(!cases.is_empty(), "{group}");
+    cases
 }
 
 /// One case of the reference collection.
 pub(crate) fn reference(id: &str) -> serde_json::Value {
-    let all: serde_json::Value =
-        serde_json::from_str(include_str!("../data/computed.json")).expect("sound JSON");
-    all["cases"]
-        .as_array()
-        .expect("cases")
-        .iter()
+    references()
+        .into_iter()
         .find(|case| case["id"] == id)
-        .cloned()
         .expect("the case")
 }

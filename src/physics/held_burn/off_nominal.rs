@@ -1,7 +1,9 @@
 //! A solved burn that does not go as planned: the engine stops early, starts late, or is weak.
 
 use super::{Controls, Engine, HeldBurn, Task, flight};
+use crate::numerics::tolerance::ARC_RELATIVE;
 use crate::physics::conic::{self, Orbit};
+use crate::physics::thrust::{energy, inverse_apsides};
 
 /// What is left when the engine stops after a part of the burn.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -28,8 +30,6 @@ pub struct Missed {
     pub orbit: Orbit,
     /// Δv of two impulsive burns at the apsides that then restore the planned orbit, km/s. A tilt of the plane is not counted.
     pub repair_dv_km_s: f64,
-    /// Lowest radius during the burn, km.
-    pub lowest_radius_km: f64,
 }
 
 impl Missed {
@@ -46,8 +46,9 @@ impl Task<'_> {
             duration_s: share * burn.controls.duration_s,
             ..burn.controls
         };
-        let y = flight::end_state(self, &controls)?;
-        let (inverse_p, inverse_a, energy) = flight::apsides(self.gm, &y);
+        let y = flight::spatial_end(self, &controls, ARC_RELATIVE)?;
+        let (inverse_p, inverse_a) = inverse_apsides(self.gm, &y);
+        let energy = energy(self.gm, &y);
         Some(if energy < 0.0 {
             Left::Orbit(Orbit {
                 periapsis_km: 1.0 / inverse_p,
@@ -75,8 +76,8 @@ impl Task<'_> {
             duration_s: 3.0 * burn.controls.duration_s,
             ..burn.controls
         };
-        let (duration_s, y, lowest_radius_km) = flight::until_energy(&task, &controls)?;
-        let (inverse_p, inverse_a, _) = flight::apsides(self.gm, &y);
+        let (duration_s, y) = flight::until_energy(&task, &controls)?;
+        let (inverse_p, inverse_a) = inverse_apsides(self.gm, &y);
         let orbit = Orbit {
             periapsis_km: 1.0 / inverse_p,
             apoapsis_km: 1.0 / inverse_a,
@@ -93,7 +94,6 @@ impl Task<'_> {
             extra_s: duration_s - burn.controls.duration_s,
             orbit,
             repair_dv_km_s: at_apoapsis.abs() + at_periapsis.abs(),
-            lowest_radius_km,
         })
     }
 }

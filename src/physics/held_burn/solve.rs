@@ -375,15 +375,12 @@ impl<'a> Level<'a> {
                 part *= 0.35;
             }
             let Some((trial, there)) = taken else {
+                if !fresh {
+                    known = None;
+                    continue;
+                }
                 // Rounding errors of the flight end the descent a little above the mark.
-                if size <= 100.0 * self.care.closed {
-                    return Some(here);
-                }
-                if fresh {
-                    return None;
-                }
-                known = None;
-                continue;
+                return (size <= 100.0 * self.care.closed).then_some(here);
             };
             let slow = 0.3 * size < self.size_of(&there.miss);
             // A slow step means that the matrix is no longer worth keeping.
