@@ -7,9 +7,13 @@ mod direct;
 mod guide;
 mod lasting;
 mod loop_way;
+pub mod plan;
+pub mod reason;
 pub mod setting;
 mod steps;
 pub mod way;
 
+pub use plan::{Before, Burn, Figures, Flown, Plan};
+pub use reason::{NotFlyable, Reason};
 pub use setting::{Burns, Choice, Limits, Passes, PlaneDemand, Policy, Setting};
-pub use way::{Before, Burn, Figures, Flown, NotFlyable, Plan, Reason, Way};
+pub use way::Way;

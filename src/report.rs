@@ -5,6 +5,7 @@ pub mod checks;
 mod json;
 pub mod lists;
 pub mod path;
+pub mod picture;
 pub mod plot;
 mod rerun;
 pub mod sources;

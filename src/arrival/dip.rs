@@ -2,10 +2,10 @@
 //!
 //! Burns: at q v_h(q) − v_p(q, A); at A v_a(p, A) − v_a(q, A). Coast: half the period of (q, A).
 
+use super::reason::{NotFlyable, Objections, Reason};
 use super::setting::{Choice, NoPassage, Setting};
 use super::way::{
-    Apsis, MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step,
-    log_grid, raise_step,
+    Apsis, MOST_BRAKE_NODES, Path, Way, brake_nodes, brake_step, log_grid, raise_step,
 };
 use crate::numerics::minimum;
 use crate::physics::conic::{self, Orbit};

@@ -2,8 +2,9 @@
 //!
 //! Δv = v_h(p) − v_p(p, A), turned where the plane asks for it. No coast.
 
+use super::reason::{NotFlyable, Objections, Reason};
 use super::setting::Setting;
-use super::way::{Apsis, NotFlyable, Objections, Path, Reason, Way, brake_step};
+use super::way::{Apsis, Path, Way, brake_step};
 
 /// The one burn.
 ///

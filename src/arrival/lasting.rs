@@ -8,10 +8,10 @@
 mod chain;
 
 use super::guide::Guide;
+use super::plan::{Burn, Figures, Plan, consume};
+use super::reason::{NotFlyable, Objections, Reason};
 use super::setting::{Burns, Choice, Passes, Setting};
-use super::way::{
-    Burn, Figures, MOST_BURNS, NotFlyable, Objections, Plan, Reason, Way, consume, log_grid,
-};
+use super::way::{MOST_BURNS, Way, log_grid};
 use super::{dip, direct, loop_way, steps};
 use crate::numerics::minimum;
 use crate::numerics::tolerance::FLAT_RELATIVE;

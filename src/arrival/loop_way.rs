@@ -3,10 +3,10 @@
 //! Burns: at q v_h(q) − v_p(q, Q); at Q v_a(p, Q) − v_a(q, Q); at p v_p(p, Q) − v_p(p, A). Coast: half of
 //! (q, Q) plus half of (p, Q).
 
+use super::reason::{NotFlyable, Objections, Reason};
 use super::setting::{Choice, NoPassage, Setting};
 use super::way::{
-    Apsis, MOST_BRAKE_NODES, NotFlyable, Objections, Path, Reason, Way, brake_nodes, brake_step,
-    log_grid, lower_step, raise_step,
+    Apsis, MOST_BRAKE_NODES, Path, Way, brake_nodes, brake_step, log_grid, lower_step, raise_step,
 };
 use crate::numerics::{minimum, root};
 use crate::physics::conic::{self, Orbit};

@@ -6,10 +6,9 @@
 //! bring the apoapsis under the cap, and under what the time limit leaves. Coasts: one period of each (q, Q_k), half of (q, A).
 
 use super::guide::{Guide, Leg};
+use super::reason::{NotFlyable, Objections, Reason};
 use super::setting::Setting;
-use super::way::{
-    Apsis, MOST_BURNS, NotFlyable, Objections, Reason, Way, brake_step, lower_step, raise_step,
-};
+use super::way::{Apsis, MOST_BURNS, Way, brake_step, lower_step, raise_step};
 use crate::numerics::root;
 use crate::physics::conic::{self, Orbit};
 use crate::physics::vehicle::Vehicle;

@@ -14,6 +14,7 @@
 //! the motion and its size is held; that the node lies on the line of apsides is not (it lies within the burn's arc). Source: equations
 //! of motion as in any textbook; the formulation is our own (docs/model.md), checked against the reference collection.
 
+mod descent;
 mod estimate;
 mod flight;
 mod off_nominal;

@@ -16,7 +16,7 @@ use crate::study::knob::{KnobId, by_id};
 use crate::study::landmarks;
 use crate::study::verdict::{self, Verdict};
 use crate::study::warning::{self, Warning};
-use crate::study::watch::{Alone, Crew, Stopped};
+use crate::study::watch::{Crew, Stopped};
 use crate::study::{Answer, Case};
 
 /// What stands over the scenario at the end of a brief.
@@ -52,13 +52,6 @@ pub struct Brief<'a> {
 }
 
 impl<'a> Brief<'a> {
-    /// Asks everything a brief needs, on one thread.
-    pub fn of(case: &'a Case, fingerprint: String) -> Self {
-        let answer = Answer::of(case);
-        let verdict = verdict::verdict(case.setting(), &answer);
-        Self::from_parts(case, fingerprint, answer, verdict, &Alone)
-    }
-
     /// Asks everything a brief needs, the work shared by a crew.
     ///
     /// # Errors
@@ -67,21 +60,11 @@ impl<'a> Brief<'a> {
         let setting = case.setting();
         let answer = Answer::with(setting, landmarks::scan_points(setting), crew)?;
         let verdict = verdict::weigh(setting, &answer, crew)?;
-        Ok(Self::from_parts(case, fingerprint, answer, verdict, crew))
-    }
-
-    fn from_parts(
-        case: &'a Case,
-        fingerprint: String,
-        answer: Answer,
-        verdict: Verdict,
-        crew: &'a dyn Crew,
-    ) -> Self {
         let questions = answer
             .best_plan()
             .and_then(|plan| engine::questions(case.setting(), plan, 0));
         let divisions = engine::divisions(case.setting());
-        Self {
+        Ok(Self {
             engine: answer.best_plan().map_or_else(Vec::new, |plan| {
                 words::engine(case, plan, questions.as_ref(), &divisions)
             }),
@@ -96,7 +79,7 @@ impl<'a> Brief<'a> {
             verdict,
             fingerprint,
             crew,
-        }
+        })
     }
 
     /// Whether any way can be flown.

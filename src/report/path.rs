@@ -12,9 +12,9 @@ mod view;
 
 use crate::arrival::{Plan, Way};
 use crate::physics::conic as physics;
+use crate::report::picture::Picture;
 use crate::report::plot::{self, Glyphs};
 use crate::study::Case;
-pub use canvas::Picture;
 use canvas::Raster;
 use conic::{Conic, Part};
 pub use description::{describe, legend};
@@ -22,9 +22,10 @@ pub use view::{Centre, View};
 use view::{Window, scale_bar_km};
 
 /// What a cell of a picture means. Colour follows it and only repeats what the glyph says.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub enum Role {
     /// Nothing.
+    #[default]
     Blank,
     /// The body.
     Body,
@@ -197,7 +198,13 @@ impl<'a> Scene<'a> {
 }
 
 /// Draws a scene into `width` × `height` cells. Any size will do; a view whose zoom is not a positive number gives an empty picture.
-pub fn draw(scene: &Scene, view: &View, glyphs: Glyphs, width: usize, height: usize) -> Picture {
+pub fn draw(
+    scene: &Scene,
+    view: &View,
+    glyphs: Glyphs,
+    width: usize,
+    height: usize,
+) -> Picture<Role> {
     let mut raster = Raster::new(width, height, glyphs);
     let conics = scene.conics();
     let Some(window) = Window::new(scene, &conics, view, &raster) else {

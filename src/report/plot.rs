@@ -2,14 +2,16 @@
 
 pub mod scale;
 
+use super::picture::Picture;
 use crate::arrival::Way;
 use crate::study::curve::{Axis, Row, Sample};
 use scale::{Scale, label};
 
 /// What a cell of a picture means. Colour follows it and only repeats what the glyph says.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub enum Role {
     /// Nothing.
+    #[default]
     Blank,
     /// Axis line or tick.
     Axis,
@@ -121,65 +123,6 @@ pub struct Plot<'a> {
     pub glyphs: Glyphs,
 }
 
-/// A rectangle of cells.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Picture {
-    /// Width in cells.
-    pub width: usize,
-    /// Height in cells.
-    pub height: usize,
-    cells: Vec<(char, Role)>,
-}
-
-impl Picture {
-    fn new(width: usize, height: usize) -> Self {
-        Self {
-            width,
-            height,
-            cells: vec![(' ', Role::Blank); width * height],
-        }
-    }
-
-    /// The cell at a column and row; blank outside.
-    pub fn cell(&self, x: usize, y: usize) -> (char, Role) {
-        if x < self.width {
-            self.cells
-                .get(y * self.width + x)
-                .copied()
-                .unwrap_or((' ', Role::Blank))
-        } else {
-            (' ', Role::Blank)
-        }
-    }
-
-    fn put(&mut self, x: usize, y: usize, glyph: char, role: Role) {
-        if x < self.width
-            && let Some(cell) = self.cells.get_mut(y * self.width + x)
-        {
-            *cell = (glyph, role);
-        }
-    }
-
-    fn write(&mut self, x: usize, y: usize, text: &str, role: Role) {
-        for (k, glyph) in text.chars().enumerate() {
-            self.put(x + k, y, glyph, role);
-        }
-    }
-
-    /// The rows as text without trailing blanks.
-    pub fn lines(&self) -> Vec<String> {
-        (0..self.height)
-            .map(|y| {
-                (0..self.width)
-                    .map(|x| self.cell(x, y).0)
-                    .collect::<String>()
-                    .trim_end()
-                    .to_owned()
-            })
-            .collect()
-    }
-}
-
 /// Cells to the left of the plot: tick labels and the axis line.
 const GUTTER: usize = 8;
 /// Rows below the plot: axis line and labels.
@@ -200,7 +143,7 @@ pub fn value_at(axis: &Axis, width: usize, column: usize) -> Option<f64> {
 }
 
 /// Draws a curve into `width` × `height` cells. Too small a space gives an empty picture.
-pub fn draw(plot: &Plot, width: usize, height: usize) -> Picture {
+pub fn draw(plot: &Plot, width: usize, height: usize) -> Picture<Role> {
     let mut picture = Picture::new(width, height);
     if width < GUTTER + 12 || height < ABOVE + BELOW + 3 {
         return picture;
@@ -301,7 +244,7 @@ fn y_scale(plot: &Plot, plot_height: usize) -> Option<Scale> {
     Scale::new(bottom, high + air, plot_height, false)
 }
 
-fn draw_axes(picture: &mut Picture, plot: &Plot, frame: &Frame) {
+fn draw_axes(picture: &mut Picture<Role>, plot: &Plot, frame: &Frame) {
     let (axis_y, plot_height) = (ABOVE + frame.plot_height, frame.plot_height);
     let (corner, horizontal, vertical) = match plot.glyphs {
         Glyphs::Ascii => ('+', '-', '|'),
@@ -339,7 +282,7 @@ fn draw_axes(picture: &mut Picture, plot: &Plot, frame: &Frame) {
     draw_x_labels(picture, plot, frame, axis_y);
 }
 
-fn draw_x_labels(picture: &mut Picture, plot: &Plot, frame: &Frame, axis_y: usize) {
+fn draw_x_labels(picture: &mut Picture<Role>, plot: &Plot, frame: &Frame, axis_y: usize) {
     let scale = &frame.x_scale;
     // A short title stands in the gutter, where it takes no room from the ticks.
     let title = plot.x_title;
@@ -386,7 +329,7 @@ fn draw_x_labels(picture: &mut Picture, plot: &Plot, frame: &Frame, axis_y: usiz
     }
 }
 
-fn draw_here(picture: &mut Picture, plot: &Plot, frame: &Frame) {
+fn draw_here(picture: &mut Picture<Role>, plot: &Plot, frame: &Frame) {
     let Some(cell) = plot.here.and_then(|here| frame.x_scale.cell(here)) else {
         return;
     };
@@ -396,7 +339,13 @@ fn draw_here(picture: &mut Picture, plot: &Plot, frame: &Frame) {
 }
 
 /// Draws what a way would cost without the finite-burn loss: a faint line that shows only where it leaves the way's own.
-fn draw_companion(picture: &mut Picture, plot: &Plot, scale: &Scale, plot_height: usize, way: Way) {
+fn draw_companion(
+    picture: &mut Picture<Role>,
+    plot: &Plot,
+    scale: &Scale,
+    plot_height: usize,
+    way: Way,
+) {
     let glyph = match plot.glyphs {
         Glyphs::Ascii => '.',
         Glyphs::Fine => '\u{2508}',
@@ -423,7 +372,7 @@ fn draw_companion(picture: &mut Picture, plot: &Plot, scale: &Scale, plot_height
 
 /// Draws one way; `best_only` draws just the stretch where it is the cheapest.
 fn draw_way(
-    picture: &mut Picture,
+    picture: &mut Picture<Role>,
     plot: &Plot,
     scale: &Scale,
     plot_height: usize,

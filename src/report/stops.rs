@@ -1,5 +1,6 @@
 //! What is left when a burn stops early, as a small curve of characters: the apoapsis by the share of the burn flown.
 
+use super::picture::Picture;
 use super::plot::scale::{Scale, label};
 use crate::physics::held_burn::Left;
 use crate::study::Case;
@@ -7,6 +8,8 @@ use crate::study::engine::Questions;
 
 /// Cells to the left of the curve.
 const GUTTER: usize = 8;
+/// Rows above it: the title.
+const TOP: usize = 1;
 
 /// Draws the curve into at most `width` by `height` cells; nothing where there is no room or nothing is captured.
 pub fn lines(case: &Case, questions: &Questions, width: usize, height: usize) -> Vec<String> {
@@ -33,68 +36,50 @@ pub fn lines(case: &Case, questions: &Questions, width: usize, height: usize) ->
     else {
         return Vec::new();
     };
-    let mut cells = vec![vec![' '; columns]; rows];
+    let mut picture = Picture::<()>::new(width, height);
     let column = |share: f64| {
         let at = (share * (columns - 1) as f64).round();
-        (at.max(0.0) as usize).min(columns - 1)
+        GUTTER + (at.max(0.0) as usize).min(columns - 1)
     };
+    let title = format!("apoapsis left, km, if burn {} stops early", questions.burn);
+    picture.write(0, 0, &title, ());
     // Before capture the spacecraft flies past: said along the top.
-    let captured = apoapses.first().map_or(1.0, |(share, _)| *share);
-    let flyby = column(captured);
-    for cell in cells[0].iter_mut().take(flyby) {
-        *cell = '~';
+    let flyby = column(apoapses.first().map_or(1.0, |(share, _)| *share));
+    for x in GUTTER..flyby {
+        picture.put(x, TOP, '~', ());
     }
-    for (word, glyph) in " flies past ".chars().enumerate() {
-        if let Some(cell) = cells[0].get_mut(2 + word)
-            && 14 < flyby
-        {
-            *cell = glyph;
-        }
+    if GUTTER + 14 < flyby {
+        picture.write(GUTTER + 2, TOP, " flies past ", ());
     }
     // Between two moments asked the curve is drawn through, in the logarithm that the axis has.
     for pair in apoapses.windows(2) {
         let (from, to) = (column(pair[0].0), column(pair[1].0));
         for x in from..=to {
-            let part = if to == from {
-                0.0
-            } else {
-                (x - from) as f64 / (to - from) as f64
-            };
+            let part = (x - from) as f64 / (to - from).max(1) as f64;
             let value = (pair[0].1.ln() * (1.0 - part) + pair[1].1.ln() * part).exp();
-            if let Some(cell) = scale.cell(value.clamp(low, high))
-                && let Some(row) = cells.get_mut(rows - 1 - cell.min(rows - 1))
-            {
-                row[x] = '#';
+            if let Some(cell) = scale.cell(value.clamp(low, high)) {
+                picture.put(x, TOP + rows - 1 - cell.min(rows - 1), '#', ());
             }
         }
     }
-    let mut out = vec![format!(
-        "apoapsis left, km, if burn {} stops early",
-        questions.burn
-    )];
-    let ticks: Vec<(usize, String)> = scale
-        .ticks(rows.div_ceil(2))
-        .into_iter()
-        .filter_map(|tick| scale.cell(tick).map(|cell| (cell, label(tick))))
-        .collect();
-    for (k, row) in cells.iter().enumerate() {
-        let tick = ticks.iter().find(|(cell, _)| rows - 1 - cell == k);
-        let (text, mark) = tick.map_or(("", '|'), |(_, text)| (text.as_str(), '+'));
-        let line: String = row.iter().collect();
-        out.push(format!("{text:>6} {mark}{}", line.trim_end()));
+    for row in 0..rows {
+        picture.put(GUTTER - 1, TOP + row, '|', ());
     }
-    out.push(format!("{:>7}+{}", "", "-".repeat(columns)));
-    let mut axis = vec![' '; columns];
-    for percent in [0_u32, 25, 50, 75, 100] {
-        let text = percent.to_string();
-        let at = column(f64::from(percent) / 100.0)
-            .saturating_sub(text.len() / 2)
-            .min(columns - text.len());
-        for (k, c) in text.chars().enumerate() {
-            axis[at + k] = c;
+    for tick in scale.ticks(rows.div_ceil(2)) {
+        if let Some(cell) = scale.cell(tick) {
+            let (row, text) = (TOP + rows - 1 - cell.min(rows - 1), label(tick));
+            picture.write((GUTTER - 2).saturating_sub(text.len()), row, &text, ());
+            picture.put(GUTTER - 1, row, '+', ());
         }
     }
-    let axis: String = axis.into_iter().collect();
-    out.push(format!("% burnt {}", axis.trim_end()));
-    out
+    let axis = TOP + rows;
+    picture.write(GUTTER - 1, axis, &format!("+{}", "-".repeat(columns)), ());
+    picture.write(0, axis + 1, "% burnt", ());
+    for percent in [0_u32, 25, 50, 75, 100] {
+        let text = percent.to_string();
+        let at = column(f64::from(percent) / 100.0).saturating_sub(text.len() / 2);
+        let at = at.clamp(GUTTER, GUTTER + columns - text.len());
+        picture.write(at, axis + 1, &text, ());
+    }
+    picture.lines()
 }

@@ -7,7 +7,7 @@ use crate::arrival::way::WayEntry;
 use crate::arrival::{NotFlyable, Plan, Setting, Way};
 
 /// What the ways say at one setting.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug, Default, PartialEq)]
 pub struct Answer {
     /// Each way of the table, in its order.
     pub ways: Vec<(Way, Result<Plan, NotFlyable>)>,
@@ -22,12 +22,8 @@ impl Answer {
     pub fn of(case: &Case) -> Self {
         let setting = case.setting();
         let points = landmarks::scan_points(setting);
-        Self::with(setting, points, &Alone).unwrap_or_else(|Stopped| Self {
-            // One thread that is never stopped does not stop.
-            ways: ask(setting),
-            best: None,
-            landmarks: Landmarks::default(),
-        })
+        // One thread that is never stopped does not stop.
+        Self::with(setting, points, &Alone).unwrap_or_default()
     }
 
     /// Asks everything about a setting, with a number of scan nodes, the work shared by a crew.

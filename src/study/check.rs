@@ -8,7 +8,7 @@ mod flown;
 use super::answer::Answer;
 use super::case::Case;
 use super::landmarks::{CrossoverKind, at_radius};
-use crate::arrival::{Burn, Choice, Plan, PlaneDemand, Setting, Way};
+use crate::arrival::{Choice, Plan, PlaneDemand, Setting, Way};
 use crate::physics::conic::Orbit;
 use crate::physics::transfer::{Approach, Model, ParentTransfer};
 use std::f64::consts::PI;
@@ -140,8 +140,7 @@ fn plan_checks(setting: &Setting, plan: &Plan, checks: &mut Vec<Check>) {
         .map(|pair| {
             let half = half_period_by_quadrature_s(gm, &pair[0].orbit_after);
             // Two burns that both brake are a whole revolution apart.
-            let brakes = |burn: &Burn| burn.speed_after_km_s < burn.speed_before_km_s;
-            if plan.way == Way::Steps && brakes(&pair[1]) {
+            if plan.way == Way::Steps && pair[1].brakes() {
                 2.0 * half
             } else {
                 half

@@ -10,7 +10,7 @@ use super::spec::{
     AltitudeChoice, ArrivalSpec, CapSpec, PassesChoice, PlaneSpec, ShapeSpec, Spec,
     TransferApoapsis, VehicleSpec,
 };
-use crate::arrival::{Plan, Way};
+use crate::arrival::Way;
 use crate::physics::conic;
 
 /// One knob.
@@ -658,7 +658,7 @@ impl Knob {
                     .first()
                     .map(|burn| case.altitude_km(burn.orbit_after.apoapsis_km))
             }),
-            K::Steps => plan(Way::Steps).map(|plan| passes_of(plan) as f64),
+            K::Steps => plan(Way::Steps).map(|plan| plan.passes() as f64),
             _ => None,
         }
     }
@@ -681,14 +681,6 @@ fn whole(knob: &Knob, number: f64) -> Result<u32, Refused> {
             knob.name
         )))
     }
-}
-
-/// How many of a plan's burns brake.
-pub fn passes_of(plan: &Plan) -> usize {
-    plan.burns
-        .iter()
-        .filter(|burn| burn.speed_after_km_s < burn.speed_before_km_s)
-        .count()
 }
 
 fn not_here<T>(why: &str) -> Result<T, Refused> {

@@ -13,7 +13,7 @@ mod slope;
 
 use super::answer::Answer;
 use super::case::Case;
-use super::knob::{KNOBS, Knob, KnobId, Value, passes_of};
+use super::knob::{KNOBS, Knob, KnobId, Value};
 use super::landmarks::Crossover;
 use super::verdict::nearest_crossover;
 use crate::arrival::{NotFlyable, Way};
@@ -51,7 +51,7 @@ impl<'a> Here<'a> {
             nearest: nearest_crossover(case.setting(), &answer.landmarks.crossovers),
             chosen_brake_km: brake.map(|plan| case.altitude_km(plan.brake_radius_km)),
             chosen_loop_km: looped.map(|radius| case.altitude_km(radius)),
-            chosen_passes: answer.plan(Way::Steps).map(|plan| passes_of(plan) as f64),
+            chosen_passes: answer.plan(Way::Steps).map(|plan| plan.passes() as f64),
         }
     }
 

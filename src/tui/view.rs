@@ -13,6 +13,7 @@ mod table;
 use super::layout::{self, LEAST};
 use super::model::{Lens, Model, Overlay};
 use super::theme::Theme;
+use crate::report::picture::Picture;
 use crate::report::words::wrap;
 use ratatui::Frame;
 use ratatui::buffer::Buffer;
@@ -82,6 +83,25 @@ fn verdict_lines(model: &Model, theme: Theme, width: usize, height: usize) -> Ve
         lines.extend(more);
     }
     lines
+}
+
+/// Puts a picture of characters into an area; blanks leave what is there.
+fn put_picture<R: Copy + Default>(
+    buffer: &mut Buffer,
+    area: Rect,
+    picture: &Picture<R>,
+    style: impl Fn(R) -> Style,
+) {
+    for y in 0..area.height {
+        for x in 0..area.width {
+            let (glyph, role) = picture.cell(usize::from(x), usize::from(y));
+            if glyph != ' '
+                && let Some(cell) = buffer.cell_mut((area.x + x, area.y + y))
+            {
+                cell.set_char(glyph).set_style(style(role));
+            }
+        }
+    }
 }
 
 /// Writes lines into an area from line `first` on; what does not fit is left out.

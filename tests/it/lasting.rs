@@ -223,6 +223,7 @@ fn absurd_engines_get_an_answer_or_a_reason() {
         (22.0, 1.0, 60.0, 90.0),
         (22.0, 100_000.0, 60.0, 90.0),
         (22.0, 220.0, 60.0, 1e-9),
+        (22.0, 220.0, 60.0, 0.0),
         (22.0, 220.0, 1e-6, 1e6),
         (1e9, 1.0, 1e-6, 1e-6),
     ] {
@@ -267,6 +268,26 @@ fn absurd_engines_get_an_answer_or_a_reason() {
             .any(|reason| matches!(reason, Reason::BurnNeverCloses { .. })),
         "{not:?}"
     );
+}
+
+/// A limit on single burns is held against the burns as they are flown, loss included; dividing them keeps it.
+#[test]
+fn the_longest_burn_is_held_against_burns_as_flown() {
+    let mut setting = moon(22.0, 6000.0);
+    setting.limits.most_starts = 4;
+    setting.passes = Passes::Best;
+    let longest = |way: Way, setting: &Setting| {
+        let used = way.figures(setting).expect("flyable").consumption;
+        used.expect("a vehicle").longest_burn_s
+    };
+    let whole = longest(Way::Direct, &setting);
+    let bare = longest(Way::Direct, &setting.impulsive());
+    assert!(bare < whole);
+    // Between the impulsive length and the flown one only what is flown counts.
+    setting.limits.longest_burn_s = 0.5 * (bare + whole);
+    let not = Way::Direct.plan(&setting).expect_err("too long");
+    assert!(matches!(not.reasons[..], [Reason::BurnTooLong { takes, .. }] if takes == whole));
+    assert!(longest(Way::Steps, &setting) <= setting.limits.longest_burn_s);
 }
 
 /// The floor holds for the path during a burn too.

@@ -1,8 +1,10 @@
 //! The burns of one course, estimated or integrated.
 
 use super::super::guide::{Guide, Leg};
+use super::super::plan::{Before, Flown};
+use super::super::reason::{NotFlyable, Reason};
 use super::super::setting::Setting;
-use super::super::way::{Apsis, Before, Flown, MOST_BURNS, NotFlyable, Reason};
+use super::super::way::{Apsis, MOST_BURNS};
 use crate::physics::conic::Orbit;
 use crate::physics::held_burn::{
     Engine, HeldBurn, NoBurn, Start, Steering, Task, first_order_loss_km_s,
@@ -109,168 +111,178 @@ pub(super) fn integrated(
         Some((radius, v_inf_sq)) if radius == periapsis => Some(v_inf_sq),
         _ => setting.approach.v_inf_sq(periapsis).ok(),
     };
-    let legs = &guide.legs;
-    let mut orbits: ArrayVec<Orbit, MOST_BURNS> = legs.iter().map(|leg| leg.orbit).collect();
-    // Masses at ignition: first by estimate.
-    let mut masses: ArrayVec<f64, MOST_BURNS> = ArrayVec::new();
-    let mut mass = vehicle.start_mass_kg();
-    for part in estimated(setting, vehicle, steering, guide) {
-        masses.push(mass);
-        mass -= part.propellant_kg;
-    }
-    let mut burns: ArrayVec<Option<HeldBurn>, MOST_BURNS> = legs.iter().map(|_| None).collect();
+    let mut chain = Chain::new(setting, vehicle, steering, guide, &approach);
+    let mut burns: ArrayVec<Option<HeldBurn>, MOST_BURNS> =
+        guide.legs.iter().map(|_| None).collect();
     for _ in 0..10 {
-        for k in (0..legs.len()).rev() {
-            let Some(task) = task(
-                setting, vehicle, steering, guide, &orbits, k, masses[k], &approach,
-            ) else {
-                continue;
-            };
+        for k in (0..guide.legs.len()).rev() {
+            let Some(task) = chain.task(k) else { continue };
             let burn = task
                 .solve(burns[k].as_ref())
                 .map_err(|no| NotFlyable::because(reason(no, k, vehicle)))?;
-            if k != 0 {
-                match legs[k].apsis {
-                    Apsis::Peri => orbits[k - 1].periapsis_km = burn.controls.open_km,
-                    Apsis::Apo => orbits[k - 1].apoapsis_km = burn.controls.open_km,
-                }
-            }
+            chain.start_from(k, burn.controls.open_km);
             burns[k] = Some(burn);
         }
-        let mut moved = 0.0_f64;
-        let mut mass = vehicle.start_mass_kg();
-        for (k, burn) in burns.iter().enumerate() {
-            moved = moved.max((masses[k] / mass - 1.0).abs());
-            masses[k] = mass;
-            if let Some(burn) = burn {
-                mass *= (-burn.dv_km_s / vehicle.exhaust_speed_km_s()).exp();
-            }
-        }
-        if moved <= 1e-11 {
+        if chain.weigh(&burns) <= 1e-11 {
             break;
         }
     }
-    let mut parts = ArrayVec::new();
-    for k in 0..legs.len() {
-        parts.push(part(
+    burns
+        .iter()
+        .enumerate()
+        .map(|(k, burn)| chain.part(k, burn.as_ref()))
+        .collect()
+}
+
+/// The burns of a course while they are being solved: what each starts from and leaves, with which mass.
+struct Chain<'a> {
+    setting: &'a Setting,
+    vehicle: &'a Vehicle,
+    steering: Steering,
+    guide: &'a Guide,
+    approach: &'a dyn Fn(f64) -> Option<f64>,
+    /// Orbit after each burn, km.
+    orbits: ArrayVec<Orbit, MOST_BURNS>,
+    /// Mass at each ignition, kg.
+    masses: ArrayVec<f64, MOST_BURNS>,
+}
+
+impl<'a> Chain<'a> {
+    /// The impulsive orbits, and masses by estimate.
+    fn new(
+        setting: &'a Setting,
+        vehicle: &'a Vehicle,
+        steering: Steering,
+        guide: &'a Guide,
+        approach: &'a dyn Fn(f64) -> Option<f64>,
+    ) -> Self {
+        let mut mass = vehicle.start_mass_kg();
+        let masses = estimated(setting, vehicle, steering, guide)
+            .iter()
+            .map(|part| {
+                let at_ignition = mass;
+                mass -= part.propellant_kg;
+                at_ignition
+            })
+            .collect();
+        Self {
             setting,
             vehicle,
             steering,
             guide,
-            &orbits,
-            k,
-            masses[k],
-            burns[k].as_ref(),
-            &approach,
-        )?);
+            approach,
+            orbits: guide.legs.iter().map(|leg| leg.orbit).collect(),
+            masses,
+        }
     }
-    Ok(parts)
-}
 
-/// The task of one burn; `None` where there is nothing to do.
-#[allow(clippy::too_many_arguments)]
-fn task<'a>(
-    setting: &Setting,
-    vehicle: &Vehicle,
-    steering: Steering,
-    guide: &Guide,
-    orbits: &[Orbit],
-    k: usize,
-    mass_kg: f64,
-    approach: &'a dyn Fn(f64) -> Option<f64>,
-) -> Option<Task<'a>> {
-    let leg: &Leg = &guide.legs[k];
-    if leg.dv_km_s() < NOTHING_KM_S {
-        return None;
+    /// The orbit before a burn and the one the impulsive course has there; `None` for the first burn.
+    fn before(&self, k: usize) -> Option<(Orbit, Orbit)> {
+        let last = k.checked_sub(1)?;
+        Some((self.orbits[last], self.guide.legs[last].orbit))
     }
-    let (start, open_km) = if k == 0 {
-        (Start::Hyperbola(approach), guide.brake_radius_km)
-    } else {
-        let before = orbits[k - 1];
-        match leg.apsis {
-            Apsis::Peri => (
+
+    /// The task of one burn; `None` where there is nothing to do.
+    fn task(&self, k: usize) -> Option<Task<'a>> {
+        let leg: &Leg = &self.guide.legs[k];
+        if leg.dv_km_s() < NOTHING_KM_S {
+            return None;
+        }
+        let (start, open_km) = match (self.before(k), leg.apsis) {
+            (None, _) => (Start::Hyperbola(self.approach), self.guide.brake_radius_km),
+            (Some((before, impulsive)), Apsis::Peri) => (
                 Start::AtPeriapsis {
                     apoapsis_km: before.apoapsis_km,
                 },
-                guide.legs[k - 1].orbit.periapsis_km,
+                impulsive.periapsis_km,
             ),
-            Apsis::Apo => (
+            (Some((before, impulsive)), Apsis::Apo) => (
                 Start::AtApoapsis {
                     periapsis_km: before.periapsis_km,
                 },
-                guide.legs[k - 1].orbit.apoapsis_km,
+                impulsive.apoapsis_km,
             ),
-        }
-    };
-    Some(Task {
-        gm: setting.gm,
-        start,
-        open_km,
-        speed_before_km_s: leg.step.before,
-        speed_after_km_s: leg.step.after,
-        turn_rad: leg.turn,
-        goal: orbits[k],
-        engine: Engine {
-            thrust_n: vehicle.thrust_n,
-            exhaust_km_s: vehicle.exhaust_speed_km_s(),
-            mass_kg,
-        },
-        steering,
-    })
-}
-
-#[allow(clippy::too_many_arguments)]
-fn part(
-    setting: &Setting,
-    vehicle: &Vehicle,
-    steering: Steering,
-    guide: &Guide,
-    orbits: &[Orbit],
-    k: usize,
-    mass_kg: f64,
-    burn: Option<&HeldBurn>,
-    approach: &dyn Fn(f64) -> Option<f64>,
-) -> Result<Part, NotFlyable> {
-    let task = task(
-        setting, vehicle, steering, guide, orbits, k, mass_kg, approach,
-    );
-    let (Some(task), Some(burn)) = (task, burn) else {
-        return Ok(Part {
-            dv_km_s: 0.0,
-            propellant_kg: 0.0,
-            duration_s: 0.0,
-            orbit: orbits[k],
-            flown: None,
-        });
-    };
-    let never = || {
-        NotFlyable::because(Reason::BurnNeverCloses {
-            burn: k + 1,
-            thrust: vehicle.thrust_n,
-            closes_at: None,
+        };
+        Some(Task {
+            gm: self.setting.gm,
+            start,
+            open_km,
+            speed_before_km_s: leg.step.before,
+            speed_after_km_s: leg.step.after,
+            turn_rad: leg.turn,
+            goal: self.orbits[k],
+            engine: Engine {
+                thrust_n: self.vehicle.thrust_n,
+                exhaust_km_s: self.vehicle.exhaust_speed_km_s(),
+                mass_kg: self.masses[k],
+            },
+            steering: self.steering,
         })
-    };
-    let track = task.track(burn).ok_or_else(never)?;
-    let before = match (k, guide.legs[k].apsis) {
-        (0, _) => Before::Hyperbola {
-            v_inf_sq: burn.v_inf_sq.unwrap_or(guide.v_inf_sq),
-            periapsis_km: burn.controls.open_km,
-        },
-        (_, Apsis::Peri) => Before::AtPeriapsis(orbits[k - 1]),
-        (_, Apsis::Apo) => Before::AtApoapsis(orbits[k - 1]),
-    };
-    Ok(Part {
-        dv_km_s: burn.dv_km_s,
-        propellant_kg: vehicle.propellant_for_kg(mass_kg, burn.dv_km_s),
-        duration_s: burn.controls.duration_s,
-        orbit: orbits[k],
-        flown: Some(Flown {
-            controls: burn.controls,
-            track,
-            mass_at_ignition_kg: mass_kg,
-            before,
-        }),
-    })
+    }
+
+    /// The burn before has to leave what this one starts from.
+    fn start_from(&mut self, k: usize, open_km: f64) {
+        let Some(last) = k.checked_sub(1) else { return };
+        match self.guide.legs[k].apsis {
+            Apsis::Peri => self.orbits[last].periapsis_km = open_km,
+            Apsis::Apo => self.orbits[last].apoapsis_km = open_km,
+        }
+    }
+
+    /// Masses by the burns as they are; returns by how much one moved at most, as a fraction.
+    fn weigh(&mut self, burns: &[Option<HeldBurn>]) -> f64 {
+        let mut moved = 0.0_f64;
+        let mut mass = self.vehicle.start_mass_kg();
+        for (known, burn) in self.masses.iter_mut().zip(burns) {
+            moved = moved.max((*known / mass - 1.0).abs());
+            *known = mass;
+            if let Some(burn) = burn {
+                mass *= (-burn.dv_km_s / self.vehicle.exhaust_speed_km_s()).exp();
+            }
+        }
+        moved
+    }
+
+    fn part(&self, k: usize, burn: Option<&HeldBurn>) -> Result<Part, NotFlyable> {
+        let (orbit, mass_at_ignition_kg) = (self.orbits[k], self.masses[k]);
+        let (Some(task), Some(burn)) = (self.task(k), burn) else {
+            return Ok(Part {
+                dv_km_s: 0.0,
+                propellant_kg: 0.0,
+                duration_s: 0.0,
+                orbit,
+                flown: None,
+            });
+        };
+        let track = task.track(burn).ok_or_else(|| {
+            let never = NoBurn::NeverCloses {
+                closes_at: f64::INFINITY,
+            };
+            NotFlyable::because(reason(never, k, self.vehicle))
+        })?;
+        let before = match (self.before(k), self.guide.legs[k].apsis) {
+            (None, _) => Before::Hyperbola {
+                v_inf_sq: burn.v_inf_sq.unwrap_or(self.guide.v_inf_sq),
+                periapsis_km: burn.controls.open_km,
+            },
+            (Some((before, _)), Apsis::Peri) => Before::AtPeriapsis(before),
+            (Some((before, _)), Apsis::Apo) => Before::AtApoapsis(before),
+        };
+        Ok(Part {
+            dv_km_s: burn.dv_km_s,
+            propellant_kg: self
+                .vehicle
+                .propellant_for_kg(mass_at_ignition_kg, burn.dv_km_s),
+            duration_s: burn.controls.duration_s,
+            orbit,
+            flown: Some(Flown {
+                controls: burn.controls,
+                track,
+                mass_at_ignition_kg,
+                before,
+            }),
+        })
+    }
 }
 
 fn reason(no: NoBurn, k: usize, vehicle: &Vehicle) -> Reason {

@@ -110,22 +110,71 @@ fn legend(case: &Case, glyphs: Glyphs) -> String {
     )
 }
 
-fn ways(brief: &Brief, glyphs: Glyphs, page: &mut Page) {
-    let lasting = brief.case.setting().lasting().is_some();
+/// A column of the table of ways: two lines of heading, width, value.
+struct Column {
+    heading: [&'static str; 2],
+    width: usize,
+    value: fn(&Plan) -> Option<String>,
+}
+
+const fn column(
+    heading: [&'static str; 2],
+    width: usize,
+    value: fn(&Plan) -> Option<String>,
+) -> Column {
+    Column {
+        heading,
+        width,
+        value,
+    }
+}
+
+/// The columns in their order; the loss stands only where burns take time, and the others draw together for it.
+fn columns(lasting: bool) -> Vec<Column> {
+    let narrow = |wide: usize, by: usize| if lasting { wide - by } else { wide };
+    let mut columns = vec![
+        column(["cost", "m/s"], narrow(8, 1), |plan| m_s(plan.cost_km_s)),
+        column(["dv", "m/s"], narrow(9, 1), |plan| m_s(plan.dv_km_s)),
+    ];
     if lasting {
-        page.line(
-            "way         cost      dv   loss   propel-     with  days starts longest captured",
-        );
-        page.line(
-            "             m/s     m/s    m/s      lant   margin                 burn    after",
-        );
-    } else {
-        page.line(
-            "way          cost       dv propellant      with   days starts   longest captured",
-        );
-        page.line(
-            "              m/s      m/s              margin                     burn    after",
-        );
+        columns.push(column(["loss", "m/s"], 7, |plan| m_s(plan.loss_km_s())));
+    }
+    columns.extend([
+        column(["propel-", "lant"], narrow(11, 1), |plan| {
+            plan.consumption.map(|used| words::kg(used.propellant_kg))
+        }),
+        column(["with", "margin"], narrow(10, 1), |plan| {
+            plan.consumption
+                .map(|used| words::kg(used.propellant_with_margin_kg))
+        }),
+        column(["days", ""], narrow(7, 1), |plan| {
+            Some(words::days(plan.duration_s))
+        }),
+        column(["starts", ""], 7, |plan| Some(plan.starts().to_string())),
+        column(["longest", "burn"], narrow(10, 2), |plan| {
+            plan.consumption
+                .map(|used| words::time(used.longest_burn_s))
+        }),
+        column(["captured", "after"], 9, |plan| {
+            plan.captured_share
+                .map(|share| format!("{:.0} %", 100.0 * share))
+        }),
+    ]);
+    columns
+}
+
+fn m_s(km_s: f64) -> Option<String> {
+    Some(format!("{:.1}", 1e3 * km_s))
+}
+
+fn ways(brief: &Brief, glyphs: Glyphs, page: &mut Page) {
+    let columns = columns(brief.case.setting().lasting().is_some());
+    for line in 0..2 {
+        let mut head = format!("{:<9}", if line == 0 { "way" } else { "" });
+        for column in &columns {
+            head.push_str(&format!("{:>w$}", column.heading[line], w = column.width));
+        }
+        page.line(&head);
     }
     for (way, plan) in brief.answer.shown(brief.case.setting()) {
         let mark = if brief.answer.best == Some(*way) {
@@ -135,8 +184,16 @@ fn ways(brief: &Brief, glyphs: Glyphs, page: &mut Page) {
         };
         let head = format!("{} {:<6}{mark}", symbol(*way, glyphs), way.name());
         match plan {
-            Ok(plan) if lasting => page.line(&format!("{head}{}", lasting_figures(plan))),
-            Ok(plan) => page.line(&format!("{head}{}", figures(plan))),
+            Ok(plan) => {
+                let figures: String = columns
+                    .iter()
+                    .map(|column| {
+                        let value = (column.value)(plan).unwrap_or_else(|| "-".to_owned());
+                        format!("{value:>w$}", w = column.width)
+                    })
+                    .collect();
+                page.line(&format!("{head}{figures}"));
+            }
             Err(not) => page.hanging(
                 &format!("{head} "),
                 &format!("not flyable: {}", words::reasons(brief.case, not)),
@@ -149,47 +206,6 @@ fn ways(brief: &Brief, glyphs: Glyphs, page: &mut Page) {
     for flag in flags(brief) {
         page.hanging("! ", &flag);
     }
-}
-
-/// A way's numbers under the headings of the table.
-fn figures(plan: &Plan) -> String {
-    let used = plan.consumption;
-    let optional = |value: Option<String>| value.unwrap_or_else(|| "-".to_owned());
-    format!(
-        " {:>7.1} {:>8.1} {:>10} {:>9} {:>6} {:>6} {:>9} {:>8}",
-        1e3 * plan.cost_km_s,
-        1e3 * plan.dv_km_s,
-        optional(used.map(|used| words::kg(used.propellant_kg))),
-        optional(used.map(|used| words::kg(used.propellant_with_margin_kg))),
-        words::days(plan.duration_s),
-        plan.starts(),
-        optional(used.map(|used| words::time(used.longest_burn_s))),
-        optional(
-            plan.captured_share
-                .map(|share| format!("{:.0} %", 100.0 * share))
-        ),
-    )
-}
-
-/// The same with the finite-burn loss.
-fn lasting_figures(plan: &Plan) -> String {
-    let used = plan.consumption;
-    let optional = |value: Option<String>| value.unwrap_or_else(|| "-".to_owned());
-    format!(
-        " {:>6.1} {:>7.1} {:>6.1} {:>9} {:>8} {:>5} {:>6} {:>7} {:>8}",
-        1e3 * plan.cost_km_s,
-        1e3 * plan.dv_km_s,
-        1e3 * plan.loss_km_s(),
-        optional(used.map(|used| words::kg(used.propellant_kg))),
-        optional(used.map(|used| words::kg(used.propellant_with_margin_kg))),
-        words::days(plan.duration_s),
-        plan.starts(),
-        optional(used.map(|used| words::time(used.longest_burn_s))),
-        optional(
-            plan.captured_share
-                .map(|share| format!("{:.0} %", 100.0 * share))
-        ),
-    )
 }
 
 fn burns(brief: &Brief, page: &mut Page) {

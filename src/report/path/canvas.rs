@@ -3,45 +3,9 @@
 use super::conic::Conic;
 use super::view::Window;
 use super::{Part, Role};
+use crate::report::picture::Picture;
 use crate::report::plot::Glyphs;
 use crate::report::plot::scale::label;
-
-/// A rectangle of cells.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Picture {
-    /// Width in cells.
-    pub width: usize,
-    /// Height in cells.
-    pub height: usize,
-    cells: Vec<(char, Role)>,
-}
-
-impl Picture {
-    /// The cell at a column and row; blank outside.
-    pub fn cell(&self, x: usize, y: usize) -> (char, Role) {
-        if x < self.width {
-            self.cells
-                .get(y * self.width + x)
-                .copied()
-                .unwrap_or((' ', Role::Blank))
-        } else {
-            (' ', Role::Blank)
-        }
-    }
-
-    /// The rows as text without trailing blanks.
-    pub fn lines(&self) -> Vec<String> {
-        (0..self.height)
-            .map(|y| {
-                (0..self.width)
-                    .map(|x| self.cell(x, y).0)
-                    .collect::<String>()
-                    .trim_end()
-                    .to_owned()
-            })
-            .collect()
-    }
-}
 
 /// First code point of the braille patterns; the low eight bits say which dots are set (Unicode, block 2800-28FF).
 const BRAILLE: u32 = 0x2800;
@@ -91,7 +55,7 @@ impl Raster {
         }
     }
 
-    pub(super) fn finish(self) -> Picture {
+    pub(super) fn finish(self) -> Picture<Role> {
         let glyph = |cell: &Cell| match cell.text {
             Some(glyph) => (glyph, cell.role),
             None if cell.role == Role::Blank => (' ', Role::Blank),
@@ -103,11 +67,13 @@ impl Raster {
                 ),
             },
         };
-        Picture {
-            width: self.width,
-            height: self.height,
-            cells: self.cells.iter().map(glyph).collect(),
+        let mut picture = Picture::new(self.width, self.height);
+        for (k, cell) in self.cells.iter().enumerate() {
+            let (shown, role) = glyph(cell);
+            // There is no cell without a width.
+            picture.put(k % self.width, k / self.width, shown, role);
         }
+        picture
     }
 
     fn cell(&self, x: usize, y: usize) -> Option<Cell> {

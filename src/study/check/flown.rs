@@ -1,6 +1,6 @@
 //! Integrated burns flown again by another method: classical Runge-Kutta with fixed steps, in space, from ignition to shut-off.
 
-use crate::arrival::{Before, Burn, Flown, Plan, Setting};
+use crate::arrival::{Before, Flown, Plan, Setting};
 use crate::physics::held_burn::Steering;
 use crate::physics::vehicle::STANDARD_GRAVITY_M_S2;
 
@@ -25,7 +25,7 @@ pub(super) fn figures(setting: &Setting, plan: &Plan) -> Vec<Figure> {
     for (k, burn) in plan.burns.iter().enumerate() {
         let Some(flown) = &burn.flown else { continue };
         const ROUTE: &str = "flown again by classical Runge-Kutta, fixed steps";
-        let (r, v, left) = fly(setting, burn, flown, steering, mass);
+        let (r, v, left) = fly(setting, flown, steering, mass);
         let speed_sq: f64 = v.iter().map(|x| x * x).sum();
         let radius = r.iter().map(|x| x * x).sum::<f64>().sqrt();
         let h = cross(&r, &v);
@@ -119,24 +119,15 @@ fn ignition(gm: f64, flown: &Flown) -> (Vector, Vector) {
     )
 }
 
-fn fly(
-    setting: &Setting,
-    burn: &Burn,
-    flown: &Flown,
-    steering: Steering,
-    mass: f64,
-) -> (Vector, Vector, f64) {
+fn fly(setting: &Setting, flown: &Flown, steering: Steering, mass: f64) -> (Vector, Vector, f64) {
     let gm = setting.gm;
     let vehicle = setting.vehicle;
     let (thrust, isp) = vehicle.map_or((0.0, 1.0), |vehicle| (vehicle.thrust_n, vehicle.isp_s));
     let flow = thrust / (isp * STANDARD_GRAVITY_M_S2);
     let controls = &flown.controls;
-    let sign = if burn.speed_after_km_s < burn.speed_before_km_s
-        || !matches!(flown.before, Before::AtApoapsis(_))
-    {
-        -1.0
-    } else {
-        1.0
+    let sign = match flown.before {
+        Before::Hyperbola { .. } | Before::AtPeriapsis(_) => -1.0,
+        Before::AtApoapsis(_) => 1.0,
     };
     let (sine_yaw, cosine_yaw) = controls.yaw_rad.sin_cos();
     let acceleration = |t: f64, r: &Vector, v: &Vector| -> Vector {

@@ -96,11 +96,10 @@ fn burn(case: &Case, plan: &Plan, k: usize, put: &mut impl FnMut(String)) {
     let Some(burn) = plan.burns.get(k) else {
         return;
     };
-    let brakes = burn.speed_after_km_s < burn.speed_before_km_s;
     let what = match (plan.way, k) {
         (Way::Direct, _) => "brake into the target",
-        (Way::Steps, _) if brakes && k + 1 == plan.starts() => "brake into the target",
-        (Way::Steps, _) if brakes => "brake, one pass of several",
+        (Way::Steps, _) if burn.brakes() && k + 1 == plan.starts() => "brake into the target",
+        (Way::Steps, _) if burn.brakes() => "brake, one pass of several",
         (_, 0) => "brake",
         (Way::Steps, _) | (_, 1) => "raise the periapsis",
         _ => "brake into the target",

@@ -1,5 +1,6 @@
 //! The curve lens: the cost of every target altitude, the hero of the screen.
 
+use super::put_picture;
 use crate::report::plot::{self, Plot};
 use crate::study::knob::{KnobId, Value, by_id};
 use crate::tui::model::Model;
@@ -47,22 +48,13 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
         usize::from(area.width),
         usize::from(area.height),
     );
-    for y in 0..area.height {
-        for x in 0..area.width {
-            let (glyph, role) = picture.cell(usize::from(x), usize::from(y));
-            if glyph != ' '
-                && let Some(cell) = buffer.cell_mut((area.x + x, area.y + y))
-            {
-                cell.set_char(glyph).set_style(theme.role(role));
-            }
-        }
-    }
+    put_picture(buffer, area, &picture, |role| theme.role(role));
     legend(model, theme, area, buffer);
 }
 
 /// Glyph and name of each way, on the first line right of the axis title.
 fn legend(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer) {
-    let mut x = area.x + 22;
+    let mut x = area.x + model.look.quantity.title().len() as u16 + 3;
     let mut write = |text: &str, style| {
         if x + (text.len() as u16) < area.right() {
             buffer.set_string(x, area.y, text, style);

@@ -30,9 +30,14 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
             entry.glyph, entry.name, entry.meaning
         ));
     }
-    prose(
-        "* the cheapest direct altitude   X a crossover: the cheapest way changes   | here   a gap: not flyable, the table says why",
-    );
+    for mark in [
+        "* the cheapest direct altitude",
+        "X a crossover: the cheapest way changes",
+        ". what a way would cost if its burns took no time",
+        "| here; a gap: not flyable, the table says why",
+    ] {
+        prose(mark);
+    }
     for (group, title) in Group::ALL {
         lines.push(Line::default());
         lines.push(Line::from(Span::styled(

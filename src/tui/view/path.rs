@@ -1,9 +1,10 @@
 //! The path lens: a picture to scale of one way, from all its orbits down to the periapsis, with its legend and the same in sentences.
 
-use super::put_page;
+use super::{put_page, put_picture};
 use crate::report::path::{self, Centre, Hyperbola, Scene, View};
 use crate::report::words::wrap;
 use crate::study::engine;
+use crate::tui::layout::fit;
 use crate::tui::model::Model;
 use crate::tui::theme::Theme;
 use ratatui::buffer::Buffer;
@@ -53,7 +54,13 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
             format!("{} {}", way.entry().glyph, way.name()),
             theme.way(way).patch(theme.strong()),
         ),
-        Span::styled("  w: next way   i o: closer, wider   a: all", theme.faint()),
+        Span::styled(
+            fit(
+                "  w next way  i closer  o wider  a all",
+                width.saturating_sub(9),
+            ),
+            theme.faint(),
+        ),
     ]);
     buffer.set_line(area.x, area.y, &head, area.width);
     let rows = area
@@ -62,17 +69,14 @@ pub(super) fn draw(model: &Model, theme: Theme, area: Rect, buffer: &mut Buffer)
         .min((2 * area.height / 3).max(LEAST_ROWS));
     let view = view_of(model.path_zoom);
     let picture = path::draw(&scene, &view, model.glyphs, width, usize::from(rows));
-    for y in 0..rows {
-        for x in 0..area.width {
-            let (glyph, role) = picture.cell(usize::from(x), usize::from(y));
-            if glyph != ' '
-                && let Some(cell) = buffer.cell_mut((area.x + x, area.y + 1 + y))
-            {
-                cell.set_char(glyph)
-                    .set_style(theme.role(role.as_plot(way)));
-            }
-        }
-    }
+    let above = Rect {
+        y: area.y + 1,
+        height: rows,
+        ..area
+    };
+    put_picture(buffer, above, &picture, |role| {
+        theme.role(role.as_plot(way))
+    });
     let legend: Vec<String> = path::legend(&scene)
         .into_iter()
         .map(|(glyph, _, name)| format!("{glyph} {name}"))
