@@ -4,7 +4,7 @@
 //! q periapsis radius of the arriving hyperbola, A wanted apoapsis radius, T thrust, ṁ = T/(Isp g₀), lead the time from ignition to the
 //! hyperbola's periapsis. A burn's own Δv is Isp g₀ ln(m₀/m₁); the finite-burn loss is that less the impulsive Δv for the same result.
 //!
-//! The flight is [`super::thrust`]'s, as for the ways; here stand the questions that published burns answer (a given ignition, the cheapest one at a
+//! The flight is that of `physics/thrust.rs`, as for the ways; here stand the questions that published burns answer (a given ignition, the cheapest one at a
 //! given aim), which the ways do not ask, for [`super::held_burn`] holds the orbit left instead. The shut-off on 1/r_a = (1 − e)/p is regular
 //! through e = 1.
 
